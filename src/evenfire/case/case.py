@@ -1,0 +1,87 @@
+"""A case as the models see it: plain frozen data in SI, read from files by :mod:`evenfire.case.load`."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from pathlib import Path
+
+from evenfire.demand.read import RecordFormat
+from evenfire.errors import Notice
+from evenfire.money.terms import Finance, Investment, Prices
+from evenfire.plant import BoilerSpec, FuelSpec, SteamConditions, VesselRules, WindowSpec
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class BoilerOffer:
+    """A boiler that stands or can be bought, with what it costs to have."""
+
+    spec: BoilerSpec
+    existing: bool
+    investment: Investment | None
+    """None for an existing boiler."""
+    maintenance_cost: float
+    """Per year while it stands [currency/a]."""
+    start_wear_cost: float
+    """Per burner start [currency]."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class VesselOffer:
+    """What accumulator vessels this site could buy."""
+
+    rules: VesselRules
+    windows: tuple[WindowSpec, ...]
+    smallest_m3: float
+    largest_m3: float
+    reference_m3: float
+    reference_pa: float
+    reference_cost: float
+    """Installed cost at the reference volume and design pressure [currency]."""
+    volume_exponent: float
+    """Cost scales with (volume / reference) ** volume_exponent."""
+    pressure_cost_per_pa: float
+    """Relative change of cost per pascal of charged pressure above the reference [1/Pa]."""
+    life_years: int
+    maintenance_cost: float
+    """Inspection and maintenance per year while a vessel stands [currency/a]."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class PlanRequest:
+    """How the plan is to be made."""
+
+    step_s: float
+    time_limit_s: float
+    """Per alternative [s]."""
+    gap: float
+    """Asked relative gap [1]."""
+    reference: str
+    alternatives: tuple[str, ...]
+    unmet_tolerance_kg_per_year: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Case:
+    """One site and one question."""
+
+    folder: Path
+    name: str
+    question: str
+    record_file: Path
+    record_format: RecordFormat
+    conditions: SteamConditions
+    fuel: FuelSpec
+    boilers: tuple[BoilerOffer, ...]
+    """Existing ones first, then the catalogue, each in file order."""
+    vessel: VesselOffer | None
+    prices: Prices
+    finance: Finance
+    fan_power_w_per_kg_s: float
+    """Electric power of fan and feed pump per steam flow [W s/kg]."""
+    plan: PlanRequest
+    notices: tuple[Notice, ...]
+    """Every number that the program assumed because the case did not state it."""
+    fuel_price_basis: str
+    """``lhv`` or ``hhv``: the basis on which the case states and the outputs show fuel energy."""
+    input_hashes: tuple[tuple[str, str], ...]
+    """(file name, sha256) of every input."""
