@@ -1,0 +1,194 @@
+"""Turns what a case file gets wrong into problems a person can mend."""
+
+from __future__ import annotations
+
+import difflib
+from collections.abc import Iterable, Mapping
+from typing import Any, Literal, get_args, get_origin
+
+from pydantic import ValidationError
+from pydantic.fields import FieldInfo
+
+from evenfire.case.schema_section import Section, field_at, section_of, unit_of
+from evenfire.errors import Problem
+
+Location = tuple[str | int, ...]
+
+
+def nearest(word: str, known: Iterable[str]) -> str:
+    """The offer ``did you mean '...'?`` for a misspelt word, or an empty text where nothing is near."""
+    by_lower = {name.lower(): name for name in known}
+    found = difflib.get_close_matches(word.lower(), by_lower, n=1, cutoff=0.6)
+    return f"did you mean '{by_lower[found[0]]}'?" if found else ""
+
+
+def written(value: object) -> str:
+    """A value as it would be written in the file, cut to a readable length."""
+    match value:
+        case bool():
+            return "true" if value else "false"
+        case str():
+            return f"'{value if len(value) <= 60 else value[:57] + '...'}'"
+        case float():
+            return f"{value:.10g}"
+        case dict():
+            return "a table"
+        case list():
+            return f"a list of {len(value)}"
+        case _:
+            return str(value)
+
+
+def with_unit(value: object, unit: str) -> str:
+    """A value and its unit, e.g. ``12 kg/h``; no unit is shown for pure numbers and text."""
+    number = isinstance(value, int | float) and not isinstance(value, bool)
+    return f"{written(value)} {unit}" if number and unit not in ("", "1") else written(value)
+
+
+def accepted(field: FieldInfo) -> str:
+    """What a key accepts, in words: kind of value, range and unit, or the list of choices."""
+    choices = _choices(field.annotation)
+    if choices:
+        each = " or ".join(f"'{choice}'" for choice in choices)
+        return f"a list of {each}" if _is_list(field.annotation) else each
+    if section_of(field) is not None:
+        return "a list of tables" if _is_list(field.annotation) else "a table"
+    if _is_list(field.annotation):
+        return "a list of numbers"
+    if str in (field.annotation, *get_args(field.annotation)):
+        return "text"
+    limits = _limits(field)
+    whole = int in (field.annotation, *get_args(field.annotation))
+    kind = "a whole number" if whole else "a number"
+    unit = unit_of(field)
+    return " ".join(part for part in (kind, limits, unit if unit != "1" else "") if part)
+
+
+def _limits(field: FieldInfo) -> str:
+    low = high = ""
+    for limit in field.metadata:
+        for attribute, words in (("ge", "at least"), ("gt", "above")):
+            if getattr(limit, attribute, None) is not None:
+                low = f"{words} {getattr(limit, attribute):.10g}"
+        for attribute, words in (("le", "at most"), ("lt", "below")):
+            if getattr(limit, attribute, None) is not None:
+                high = f"{words} {getattr(limit, attribute):.10g}"
+    return " and ".join(part for part in (low, high) if part)
+
+
+def _choices(annotation: Any) -> tuple[str, ...]:
+    if get_origin(annotation) is Literal:
+        return get_args(annotation)
+    for part in get_args(annotation):
+        if found := _choices(part):
+            return found
+    return ()
+
+
+def _is_list(annotation: Any) -> bool:
+    return get_origin(annotation) in (tuple, list)
+
+
+def key_path(location: Location) -> str:
+    """A location as people write it: ``efficiency_points[1].load_percent``."""
+    text = ""
+    for step in location:
+        text += f"[{step}]" if isinstance(step, int) else f".{step}" if text else step
+    return text
+
+
+def section_problems(
+    error: ValidationError, section: type[Section], where: str, elsewhere: Mapping[str, tuple[str, ...]]
+) -> list[Problem]:
+    """One problem per defect that pydantic found in a section.
+
+    Parameters
+    ----------
+    error : ValidationError
+        What pydantic raised for the section.
+    section : type[Section]
+        The section's model.
+    where : str
+        File and section, e.g. ``case.toml: boiler 'Old boiler',``; the key path is put behind it.
+    elsewhere : Mapping[str, tuple[str, ...]]
+        Keys of every section, to say where a misplaced key belongs.
+    """
+    return [_problem(defect, section, where, elsewhere) for defect in error.errors(include_url=False)]
+
+
+def _problem(
+    defect: Any, section: type[Section], where: str, elsewhere: Mapping[str, tuple[str, ...]]
+) -> Problem:
+    location: Location = tuple(defect["loc"])
+    found = defect["input"]
+    here = f"{where}{key_path(location)}"
+    kind = defect["type"]
+    if kind == "extra_forbidden":
+        return _unknown_key(location, section, here, elsewhere)
+    field = field_at(section, location)
+    allowed = f"must be {_accepted_at(section, location)}"
+    unit = unit_of(field) if field is not None else ""
+    if kind == "missing":
+        return Problem(code="C104", where=here, found="missing", allowed=f"state it: {allowed}")
+    if kind in _RANGE_KINDS:
+        return Problem(code="C106", where=here, found=f"found {with_unit(found, unit)}", allowed=allowed)
+    if kind == "literal_error":
+        hint = (
+            nearest(found, _choices(field.annotation)) if field is not None and isinstance(found, str) else ""
+        )
+        return Problem(
+            code="C107",
+            where=here,
+            found=f"found {written(found)}",
+            allowed=" ".join(filter(None, (allowed, hint))),
+        )
+    if kind == "string_pattern_mismatch" and field is not None:
+        return Problem(
+            code="C108", where=here, found=f"found {written(found)}", allowed=str(field.description)
+        )
+    if kind in ("too_short", "string_too_short"):
+        return Problem(code="C109", where=here, found="empty", allowed="must hold at least one entry")
+    return Problem(code="C105", where=here, found=f"found {written(found)}", allowed=allowed)
+
+
+_RANGE_KINDS = frozenset(
+    {"greater_than", "greater_than_equal", "less_than", "less_than_equal", "finite_number"}
+)
+
+
+def _accepted_at(section: type[Section], location: Location) -> str:
+    field = field_at(section, location)
+    if field is None:
+        return "a table"
+    if location and isinstance(location[-1], int) and section_of(field) is not None:
+        return "a table"
+    if location and isinstance(location[-1], int):
+        choices = _choices(field.annotation)
+        return " or ".join(f"'{choice}'" for choice in choices) if choices else _number_in_list(field)
+    return accepted(field)
+
+
+def _number_in_list(field: FieldInfo) -> str:
+    """What an entry of a list of numbers accepts."""
+    entry = get_args(field.annotation)[0]
+    return accepted(FieldInfo.from_annotation(entry))
+
+
+def _unknown_key(
+    location: Location, section: type[Section], here: str, elsewhere: Mapping[str, tuple[str, ...]]
+) -> Problem:
+    key = str(location[-1])
+    field = field_at(section, location[:-1])
+    inside = section_of(field) if field is not None else section
+    known = tuple((inside or section).model_fields)
+    return Problem(code="C103", where=here, found="unknown key", allowed=key_offer(key, known, elsewhere))
+
+
+def key_offer(key: str, known: tuple[str, ...], elsewhere: Mapping[str, tuple[str, ...]]) -> str:
+    """What to do about an unknown key: the nearest here, where it belongs, or all that is known."""
+    if offer := nearest(key, known):
+        return offer
+    homes = [name for name, keys in elsewhere.items() if key in keys]
+    if homes:
+        return f"it belongs in [{homes[0]}]"
+    return f"known here: {', '.join(known)}"

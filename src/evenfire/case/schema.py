@@ -1,0 +1,50 @@
+"""The whole case file as a schema."""
+
+from __future__ import annotations
+
+from typing import Annotated, Any
+
+from evenfire.case.schema_boiler import ExistingBoiler, NewBoiler
+from evenfire.case.schema_money import Money, Plan
+from evenfire.case.schema_section import Section, entry
+from evenfire.case.schema_site import Fuel, Record, Site, Steam, Vessel
+
+
+class CaseFile(Section):
+    """One site and one question, as written in case.toml."""
+
+    site: Annotated[Site, entry("Which site, and the question asked.")]
+    record: Annotated[Record, entry("The measured steam demand.")]
+    steam: Annotated[Steam, entry("Pressures and temperatures of the site.")]
+    fuel: Annotated[Fuel, entry("What the boilers burn and what it costs.")]
+    existing_boiler: Annotated[
+        tuple[ExistingBoiler, ...], entry("The boilers that stand on the site, one table each.", shortest=1)
+    ]
+    new_boiler: Annotated[
+        NewBoiler | None, entry("The boilers that can be bought; left out where none is in question.")
+    ] = None
+    vessel: Annotated[
+        Vessel | None, entry("The steam accumulators that can be bought; left out where none is in question.")
+    ] = None
+    money: Annotated[Money, entry("Finance, and the prices that are not fuel.")]
+    plan: Annotated[Plan, entry("How the alternatives are planned.")] = Plan()
+
+
+def case_json_schema() -> dict[str, Any]:
+    """The JSON Schema (draft 2020-12) of a case file, for editors that complete and check TOML.
+
+    Use it to write the schema to a file and name that file to the editor. Checks across several keys,
+    such as pressure windows that cannot exist, are not part of it; reading the case makes them.
+
+    Returns
+    -------
+    dict
+        With units under ``unit`` and a description for every key.
+
+    Examples
+    --------
+    >>> case_json_schema()["properties"]["existing_boiler"]["type"]
+    'array'
+    """
+    schema = CaseFile.model_json_schema()
+    return {"$schema": "https://json-schema.org/draft/2020-12/schema", **schema}
