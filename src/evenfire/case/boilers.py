@@ -22,7 +22,8 @@ from evenfire.case.assumptions import assumption
 from evenfire.case.case import BoilerOffer
 from evenfire.case.checks import net_efficiency
 from evenfire.case.draft import boiler_place
-from evenfire.case.schema_boiler import BoilerType, ExistingBoiler, NewBoiler, RatedBoiler
+from evenfire.case.schema import CaseFile
+from evenfire.case.schema_boiler import BoilerType, RatedBoiler
 from evenfire.case.schema_site import Fuel, Steam
 from evenfire.errors import CaseError, EvenfireError, Notice, Problem
 from evenfire.money.terms import Investment
@@ -42,9 +43,7 @@ class Assumed:
     reason: str
 
 
-def boiler_offers(
-    existing: tuple[ExistingBoiler, ...], catalogue: NewBoiler | None, steam: Steam, fuel: Fuel, file: str
-) -> tuple[tuple[BoilerOffer, ...], tuple[Notice, ...]]:
+def boiler_offers(written: CaseFile) -> tuple[tuple[BoilerOffer, ...], tuple[Notice, ...]]:
     """Boilers in place, then the catalogue, each in file order, and what was assumed for them.
 
     Raises
@@ -54,8 +53,8 @@ def boiler_offers(
     """
     offers = []
     notices: list[Notice] = []
-    for boiler in existing:
-        spec, assumed = _boiler(boiler.name, boiler, boiler, steam, fuel, file)
+    for boiler in written.existing_boiler:
+        spec, assumed = _boiler(boiler.name, boiler, boiler, written)
         notices += (
             assumption(boiler_place(boiler.name), each.key, f"{each.value:.4g} {each.unit}", each.reason)
             for each in assumed
@@ -69,12 +68,13 @@ def boiler_offers(
                 start_wear_cost=boiler.start_wear_cost,
             )
         )
+    catalogue = written.new_boiler
     if catalogue is None:
         return tuple(offers), tuple(notices)
     assumed_by_name: dict[str, list[Assumed]] = {}
     for size in catalogue.sizes:
         name = f"New boiler, {size.rating_kg_h / 1000.0:g} t/h"
-        spec, assumed_by_name[name] = _boiler(name, size, catalogue, steam, fuel, file)
+        spec, assumed_by_name[name] = _boiler(name, size, catalogue, written)
         offers.append(
             BoilerOffer(
                 spec=spec,
@@ -94,25 +94,25 @@ def _catalogue_notices(assumed_by_name: dict[str, list[Assumed]]) -> Iterator[No
         for each in assumed:
             by_key.setdefault(each.key, []).append((name, each))
     for key, rows in by_key.items():
-        same = len({each.value for _, each in rows}) == 1
-        shown = rows[:1] if same else rows
-        values = "; ".join(
-            f"{each.value:.4g} {each.unit}" + ("" if same else f" for '{name}'") for name, each in shown
-        )
-        yield assumption("new_boiler", key, values, rows[0][1].reason)
+        values = [f"{each.value:.4g} {each.unit}" for _, each in rows]
+        if len(set(values)) == 1:
+            shown = values[0]
+        else:
+            shown = "; ".join(f"{value} for '{name}'" for value, (name, _) in zip(values, rows, strict=True))
+        yield assumption("new_boiler", key, shown, rows[0][1].reason)
 
 
 def _boiler(
-    name: str, rated: RatedBoiler, kind: BoilerType, steam: Steam, fuel: Fuel, file: str
+    name: str, rated: RatedBoiler, kind: BoilerType, written: CaseFile
 ) -> tuple[BoilerSpec, list[Assumed]]:
     try:
-        return _spec(name, rated, kind, steam, fuel)
+        return _spec(name, rated, kind, written.steam, written.fuel)
     except EvenfireError as error:
         raise CaseError(
             *(
                 Problem(
                     code="C129",
-                    where=f"{file}: {boiler_place(name)}, {problem.where}",
+                    where=f"{boiler_place(name)}, {problem.where}",
                     found=problem.found,
                     allowed=problem.allowed,
                 )
@@ -133,6 +133,7 @@ def _spec(
         assumed.append(Assumed(key=key, value=value, unit=unit, reason=reason))
         return value
 
+    burner = fuel.kind != "electricity"
     working_pa = bar_g_to_pa(steam.boiler_pressure_bar_g)
     feedwater_k = degc_to_k(steam.feedwater_temperature_degc)
     rated_kg_s = kg_h_to_kg_s(rated.rating_kg_h)
@@ -190,12 +191,11 @@ def _spec(
             kind.stack_loss_percent_per_k,
             assumed_stack_slope_per_k(fuel.kind) * 100.0,
             "%/K",
-            "Siegert formula at 3 % O2",
+            "Siegert formula at 3 % O2" if burner else "no stack",
         )
         / 100.0,
     )
     curve = fuel_curve(bare, working_pa, feedwater_k)
-    burner = fuel.kind != "electricity"
     purge_energy_kwh = stated_or(
         "purge_energy_kwh",
         rated.purge_energy_kwh,
@@ -203,29 +203,26 @@ def _spec(
         "kWh/start",
         "60 s of full combustion air leaving at 150 degC" if burner else "no burner",
     )
-    start_energy_j = cold_start_energy_j(
-        water_content_m3, working_pa, lowest_firing_efficiency_lhv(bare, working_pa)
+    cold_start_fuel_j = J_PER_KWH * stated_or(
+        "cold_start_fuel_kwh_lhv",
+        rated.cold_start_fuel_kwh_lhv,
+        cold_start_energy_j(water_content_m3, working_pa, lowest_firing_efficiency_lhv(bare, working_pa))
+        / J_PER_KWH,
+        "kWh/start",
+        "heating water and steel from 20 degC at lowest firing",
     )
     cold_start_minutes = stated_or(
         "cold_start_minutes",
         kind.cold_start_minutes,
-        assumed_cold_start_s(start_energy_j, float(curve.fuel_w_lhv[0])) / SECONDS_PER_MINUTE,
+        assumed_cold_start_s(cold_start_fuel_j, float(curve.fuel_w_lhv[0])) / SECONDS_PER_MINUTE,
         "min",
-        "heating water and steel at lowest firing",
+        "that fuel burnt at lowest firing",
     )
     spec = replace(
         bare,
         purge_energy_j=purge_energy_kwh * J_PER_KWH,
         cold_start_s=cold_start_minutes * SECONDS_PER_MINUTE,
-        cold_start_energy_j=start_energy_j,
-    )
-    assumed.append(
-        Assumed(
-            key="cold start energy",
-            value=start_energy_j / J_PER_KWH,
-            unit="kWh of fuel (net)",
-            reason="water content and steel from 20 degC at lowest firing",
-        )
+        cold_start_energy_j=cold_start_fuel_j,
     )
     return spec, assumed
 

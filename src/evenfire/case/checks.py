@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Iterator
+from collections.abc import Collection, Iterator
+from itertools import pairwise
 
 from evenfire.boiler import fuel_spec
 from evenfire.case.draft import Draft, boiler_place
-from evenfire.case.messages import nearest
 from evenfire.case.schema_boiler import BoilerType
+from evenfire.case.schema_money import AlternativeName
 from evenfire.case.schema_site import Fuel, Steam
 from evenfire.errors import Problem
 from evenfire.units import bar_g_to_pa, k_to_degc
@@ -93,7 +94,8 @@ def _too_hot(water_degc: float, where: str, pressure_bar_g: float, pressure_key:
             code="C111",
             where=where,
             found=f"found {water_degc:g} degC",
-            allowed=f"must be below boiling at {pressure_key} = {pressure_bar_g:g} bar g, {boiling_degc:.1f} degC",
+            allowed=f"must be below boiling at {pressure_key} = {pressure_bar_g:g} bar g,"
+            f" {boiling_degc:.1f} degC",
         )
 
 
@@ -134,7 +136,8 @@ def _pressure_problems(boiler: BoilerType, place: str, steam: Steam) -> Iterator
             code="C113",
             where=f"{place} design_pressure_bar_g",
             found=f"found {boiler.design_pressure_bar_g:g} bar g",
-            allowed=f"must be at least steam.boiler_pressure_bar_g, {today:g} bar g, at which all boilers work",
+            allowed=f"must be at least steam.boiler_pressure_bar_g, {today:g} bar g,"
+            " at which all boilers work",
         )
     if boiler.burner_pressure_band_bar >= today:
         yield Problem(
@@ -156,7 +159,7 @@ def _type_problems(boiler: BoilerType, place: str, draft: Draft) -> Iterator[Pro
     if draft.steam is not None:
         yield from _pressure_problems(boiler, place, draft.steam)
     loads = [point.load_percent for point in boiler.efficiency_points]
-    if any(later <= earlier for earlier, later in zip(loads, loads[1:], strict=False)):
+    if any(later <= earlier for earlier, later in pairwise(loads)):
         yield Problem(
             code="C115",
             where=f"{place} efficiency_points",
@@ -187,7 +190,8 @@ def _type_problems(boiler: BoilerType, place: str, draft: Draft) -> Iterator[Pro
             yield Problem(
                 code="C117",
                 where=f"{place} efficiency_points[{position}].efficiency_percent",
-                found=f"{point.efficiency_percent:g} % on gross (hhv) is {100.0 * net:.1f} % on net calorific value",
+                found=f"{point.efficiency_percent:g} % on gross (hhv) is {100.0 * net:.1f} % on net"
+                " calorific value",
                 allowed="cannot exceed 100 %; a maker's figure is mostly net, then calorific_basis = 'lhv'",
             )
 
@@ -245,7 +249,8 @@ def _window_problems(draft: Draft) -> Iterator[Problem]:
                 code="C120",
                 where=f"{draft.file}: vessel.charged_pressures_bar_g[{position}]",
                 found=f"found {pressure:g} bar g",
-                allowed=f"must be above a discharged pressure, the lowest of which is {min(discharged):g} bar g",
+                allowed="must be above a discharged pressure, the lowest of which is"
+                f" {min(discharged):g} bar g",
             )
     for position, pressure in enumerate(discharged):
         if pressure >= max(charged):
@@ -287,7 +292,8 @@ def _plan_problems(draft: Draft) -> Iterator[Problem]:
     if plan is None:
         return
     place = f"{draft.file}: plan"
-    for name, times in Counter(plan.alternatives).items():
+    alternatives = plan.alternatives or possible_alternatives(draft.sections)
+    for name, times in Counter(alternatives).items():
         if times > 1:
             yield Problem(
                 code="C114",
@@ -295,20 +301,16 @@ def _plan_problems(draft: Draft) -> Iterator[Problem]:
                 found=f"'{name}' is listed {times} times",
                 allowed="list each alternative once",
             )
-    if plan.reference not in plan.alternatives:
-        offer = nearest(plan.reference, plan.alternatives)
+    if plan.reference not in alternatives:
         yield Problem(
             code="C125",
             where=f"{place}.reference",
             found=f"found '{plan.reference}'",
-            allowed=" ".join(
-                filter(None, ("must be one of plan.alternatives:", ", ".join(plan.alternatives), offer))
-            ),
+            allowed=f"must be one of plan.alternatives: {', '.join(alternatives)}",
         )
-    for name in dict.fromkeys(plan.alternatives):
-        needed = _NEEDED_SECTIONS[name]
-        if needed and not any(section in draft.sections for section in needed):
-            sections = " or ".join(f"[{section}]" for section in needed)
+    for name in dict.fromkeys(alternatives):
+        if name not in possible_alternatives(draft.sections):
+            sections = " or ".join(f"[{section}]" for section in _NEEDED_SECTIONS[name])
             yield Problem(
                 code="C126",
                 where=f"{place}.alternatives",
@@ -325,7 +327,16 @@ def _plan_problems(draft: Draft) -> Iterator[Problem]:
         )
 
 
-_NEEDED_SECTIONS = {
+def possible_alternatives(sections: Collection[str]) -> tuple[AlternativeName, ...]:
+    """Every alternative for which a case has one of the sections it needs, in the usual order."""
+    return tuple(
+        name
+        for name, needed in _NEEDED_SECTIONS.items()
+        if not needed or any(section in sections for section in needed)
+    )
+
+
+_NEEDED_SECTIONS: dict[AlternativeName, tuple[str, ...]] = {
     "as is": (),
     "bigger boiler": ("new_boiler",),
     "further boiler": ("new_boiler",),

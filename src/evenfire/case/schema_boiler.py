@@ -36,8 +36,8 @@ class BoilerType(Section):
         RatingBasis,
         entry(
             "Conditions of every rating_kg_h of this section: 'actual' at boiler pressure and feedwater"
-            " temperature of the site, or 'from_and_at_100c' as on most nameplates (100 degC water to 100 degC"
-            " steam, 2256.5 kJ/kg), which is converted."
+            " temperature of the site, or 'from_and_at_100c' as on many nameplates (water at 100 degC to"
+            " steam at 100 degC, 2256.5 kJ/kg), which is converted."
         ),
     ]
     design_pressure_bar_g: Annotated[
@@ -106,7 +106,7 @@ class BoilerType(Section):
             "Time from cold to steam at boiler pressure.",
             above=0.0,
             at_most=2880.0,
-            when_left_out="common practice for shell boilers",
+            when_left_out="that fuel burnt at lowest firing",
         ),
     ] = None
     ramp_percent_per_minute: Annotated[
@@ -116,7 +116,7 @@ class BoilerType(Section):
             "Largest change of output while firing.",
             above=0.0,
             at_most=1000.0,
-            when_left_out="common practice, from the rating",
+            when_left_out="the rating in two minutes, common practice",
         ),
     ] = None
     stack_loss_percent_per_k: Annotated[
@@ -158,7 +158,8 @@ class RatedBoiler(Section):
         float | None,
         quantity(
             "m3",
-            "Water of the boiler at normal level; with the burner's pressure band it is the boiler's own store.",
+            "Water of the boiler at normal level; with the burner's pressure band it is the boiler's own"
+            " store.",
             above=0.0,
             at_most=1000.0,
             when_left_out="from the rating",
@@ -172,6 +173,16 @@ class RatedBoiler(Section):
             at_least=0.0,
             at_most=1000.0,
             when_left_out="from rating and boiler temperature",
+        ),
+    ] = None
+    cold_start_fuel_kwh_lhv: Annotated[
+        float | None,
+        quantity(
+            "kWh/start",
+            "Fuel, on net calorific value, that brings the cold boiler to pressure.",
+            at_least=0.0,
+            at_most=1.0e6,
+            when_left_out="heating water and steel from 20 degC at lowest firing",
         ),
     ] = None
     maintenance_per_year: Annotated[

@@ -111,15 +111,16 @@ class Plan(Section):
         AlternativeName, entry("The alternative that savings and payback are measured against.")
     ] = "as is"
     alternatives: Annotated[
-        tuple[AlternativeName, ...],
+        tuple[AlternativeName, ...] | None,
         entry(
             "Which ways to supply the demand are compared: 'as is'; 'bigger boiler' (new one in place of the"
             " old); 'further boiler' (new one beside them); 'storage' (accumulator with today's boilers);"
             " 'free choice' (any mix). The boilers need [new_boiler], storage needs [vessel], free choice one"
             " of the two.",
             shortest=1,
+            when_left_out="every one that the case's sections allow",
         ),
-    ] = ("as is", "bigger boiler", "further boiler", "storage", "free choice")
+    ] = None
     unmet_steam_tolerance_t_per_year: Annotated[
         float,
         quantity("t/a", "Unmet steam per year that is put up with.", at_least=0.0, at_most=1.0e6),

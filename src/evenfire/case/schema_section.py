@@ -43,9 +43,12 @@ def quantity(
     )
 
 
-def entry(meaning: str, *, pattern: str | None = None, shortest: int | None = None) -> Any:
+def entry(
+    meaning: str, *, pattern: str | None = None, shortest: int | None = None, when_left_out: str | None = None
+) -> Any:
     """The annotation of a key that is not a number: meaning, text pattern, least length."""
-    return Field(description=meaning, pattern=pattern, min_length=shortest)
+    extra: dict[str, Any] | None = {"assumed": when_left_out} if when_left_out is not None else None
+    return Field(description=meaning, pattern=pattern, min_length=shortest, json_schema_extra=extra)
 
 
 def unit_of(field: FieldInfo) -> str:

@@ -32,7 +32,8 @@ class Record(Section):
         GapRule,
         entry(
             "What to do where values are missing: 'refuse' the record, 'hold' the last value, 'interpolate'"
-            " between the values on both sides, or 'zero' where the plant stood still. What was filled is reported."
+            " between the values on both sides, or 'zero' where the plant stood still. What was filled is"
+            " reported."
         ),
     ] = "refuse"
     largest_gap_minutes: Annotated[
@@ -161,9 +162,9 @@ class Vessel(Section):
             Annotated[float, quantity("bar g", "A discharged pressure.", at_least=0.0, at_most=198.9)], ...
         ],
         entry(
-            "Pressures the vessel could be discharged to [bar g]; each at least steam.process_pressure_bar_g plus"
-            " steam.discharging_pressure_drop_bar. Every pair of a charged and a lower discharged pressure is a"
-            " window the plan may choose.",
+            "Pressures the vessel could be discharged to [bar g]; each at least steam.process_pressure_bar_g"
+            " plus steam.discharging_pressure_drop_bar. Every pair of a charged and a lower discharged"
+            " pressure is a window the plan may choose.",
             shortest=1,
         ),
     ]
@@ -227,7 +228,8 @@ class Vessel(Section):
         float,
         quantity(
             "%/bar",
-            "Change of cost per bar of charged pressure above reference_design_pressure_bar_g (below it, less).",
+            "Change of cost per bar of charged pressure above reference_design_pressure_bar_g (below it,"
+            " less).",
             at_least=0.0,
             at_most=50.0,
         ),
