@@ -77,6 +77,10 @@ class OutOfRangeError(EvenfireError):
     """A physical input lies outside the range in which the formula is valid."""
 
 
+class MoneyError(EvenfireError):
+    """A rate, price, investment or horizon with which no honest amount can be computed."""
+
+
 class OutputError(EvenfireError):
     """The output folder cannot be written."""
 

@@ -1,11 +1,32 @@
 """Prices, investments and yearly quantities, as plain frozen data.
 
 Energy is on net calorific value, in joules; money is in the case's currency at its price date.
+Year 0 is the investment, years 1 to the horizon are operation, and every amount is paid at the end
+of its year. Nominal amounts contain inflation, real amounts are in the price date's money.
 """
 
 from __future__ import annotations
 
 from dataclasses import dataclass
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Tax:
+    """Profit tax of an owner whose other income uses up every deduction in its year."""
+
+    rate: float
+    """Share of profit paid as tax [1]; the discount rate must then be one after tax."""
+    depreciation_shares: tuple[float, ...]
+    """Share of a purchase deducted in the 1st, 2nd, ... year after it [1]; they sum to one."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Grant:
+    """Money towards a first purchase that need not be paid back."""
+
+    share: float
+    """Share of the purchase price without contingency [1]."""
+    years_after_purchase: int = 0
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -20,7 +41,12 @@ class Finance:
     rate_basis: str
     """``real`` or ``nominal``; escalations are stated on the same basis."""
     contingency: float = 0.0
-    """Share added to every investment [1]."""
+    """Share added to every investment and its replacements [1]."""
+    inflation: float = 0.0
+    """General price rise per year [1]; links real and nominal amounts."""
+    tax: Tax | None = None
+    reinvestment_rate: float | None = None
+    """What yearly savings earn until the horizon [1]; None for the discount rate."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -31,6 +57,9 @@ class Price:
     """Price at the price date, per unit of the quantity it prices."""
     escalation: float = 0.0
     """Change per year [1]; year n is paid at amount * (1 + escalation)**n."""
+    path: tuple[tuple[int, float], ...] = ()
+    """(year after the price date, price) in rising years; straight lines lead from ``amount`` in year 0
+    through these points, and ``escalation`` holds from the last of them on."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -71,3 +100,14 @@ class Investment:
     """Installed cost before contingency at the price date's prices [currency]."""
     life_years: int
     """Replaced at the same real price after this many years; the unused part is the residual value."""
+    year: int = 0
+    """Year in which it is bought and its life begins."""
+    payments: tuple[tuple[int, float], ...] = ((0, 1.0),)
+    """(years after the purchase, share of its price) of a contract whose sums do not follow inflation."""
+    escalation: float | None = None
+    """Change of its price per year on the basis of ``Finance.rate_basis`` [1]; None for general inflation."""
+    replacement_amount: float | None = None
+    """Cost of a replacement before contingency at the price date's prices; None for ``amount``."""
+    residual_value: float | None = None
+    """Value at the horizon at the price date's prices; None for the straight-line unused part."""
+    grant: Grant | None = None
