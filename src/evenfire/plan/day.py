@@ -1,0 +1,180 @@
+"""Lower bound and good schedule of one typical day for a fixed plant."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+from math import ceil, floor
+
+import numpy as np
+from numpy.typing import NDArray
+
+from evenfire.plan.inputs import PlanBoiler, PlanRates
+from evenfire.plan.recursion import lap, path
+from evenfire.plan.tables import StepCosts, step_costs
+
+FloatArray = NDArray[np.float64]
+IntArray = NDArray[np.int64]
+
+_SNAP = 1e-9
+_MOST_LAPS = 5
+_SETTLING_LAPS = 2
+_LAP_PROGRESS = 2e-5
+"""Relative gain of the bound below which another lap is not worth it."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Store:
+    """A vessel of known size as one day's dispatch sees it."""
+
+    capacity_t: float
+    release_t_h: float
+    loss_t_h: float
+    credit_k_t: float
+    """Present cost saved per tonne charged a year [k]."""
+
+
+NO_STORE = Store(capacity_t=0.0, release_t_h=0.0, loss_t_h=0.0, credit_k_t=0.0)
+
+
+@dataclass(frozen=True, kw_only=True)
+class DayProblem:
+    """Dispatch of the boilers in service and one store over one cyclic day.
+
+    Costs are present costs per yearly occurrence of the day [k].
+    """
+
+    demand_t_h: FloatArray
+    step_h: float
+    boilers: tuple[PlanBoiler, ...]
+    pressure: int
+    rates: PlanRates
+    store: Store
+    quantum_t: float
+
+    @cached_property
+    def _outward(self) -> StepCosts:
+        return self._tables(outward=True)
+
+    def _tables(self, *, outward: bool) -> StepCosts:
+        return step_costs(
+            self.boilers, self.pressure, self.rates, self.step_h, self.quantum_t, outward=outward
+        )
+
+    def _whole_quanta(self) -> tuple[IntArray, FloatArray]:
+        """Demand plus standing loss per step [quanta], rounded down cumulatively, and the exact one."""
+        exact = (self.demand_t_h + self.store.loss_t_h) * self.step_h / self.quantum_t
+        total = np.floor(np.concatenate([[0.0], np.cumsum(exact)]) + _SNAP).astype(np.int64)
+        return np.diff(total), exact
+
+    def lower_bound(self) -> float:
+        """A valid lower bound on the day's least cost [k].
+
+        Laps of the cyclic day: for any function V of the state, the least of (lap(V) - V) over states
+        never exceeds the cost of a day that ends where it began.
+        """
+        demand, exact = self._whole_quanta()
+        tables = self._outward
+        levels = self._levels(outward=True)
+        discharge = self._discharge(outward=True)
+        unmet = self.rates.unmet_k_t * self.quantum_t
+        credit = self.store.credit_k_t * self.quantum_t
+        # Charging is counted from the change of level on the grid; what standing loss and the rounding of
+        # demand can shift in it is granted in advance.
+        loss = len(demand) * self.store.loss_t_h * self.step_h / self.quantum_t
+        granted = abs(credit) * float(np.abs(exact - demand).sum()) + max(0.0, credit) * loss
+        value = np.zeros((len(tables.most), levels))
+        best = -np.inf
+        for _ in range(_MOST_LAPS):
+            after = lap(value, demand, tables.costs, tables.most, tables.start, unmet, credit, discharge)
+            reached = np.isfinite(after)
+            bound = float((after[reached] - value[reached]).min())
+            done = bound <= best + _LAP_PROGRESS * abs(bound)
+            best = max(best, bound)
+            if done:
+                break
+            value = np.where(reached, after, after[reached].max()) - after[reached].min()
+        return best - granted
+
+    def _levels(self, *, outward: bool) -> int:
+        count = self.store.capacity_t / self.quantum_t
+        return ceil(count - _SNAP) + 2 if outward else max(1, floor(count + _SNAP))
+
+    def _discharge(self, *, outward: bool) -> int:
+        if outward:
+            fall = self.store.release_t_h + self.store.loss_t_h
+            return ceil(fall * self.step_h / self.quantum_t - _SNAP) + 1
+        return floor(self.store.release_t_h * self.step_h / self.quantum_t + _SNAP)
+
+    def schedule(self, hold: int, offset: int) -> DaySchedule | None:
+        """A good day on the grid whose burners change only every ``hold`` steps.
+
+        Returns
+        -------
+        DaySchedule or None
+            None where the grid has no cyclic day (the plan then looks elsewhere).
+        """
+        demand, _ = self._whole_quanta()
+        tables = self._tables(outward=False)
+        levels = self._levels(outward=False)
+        discharge = self._discharge(outward=False)
+        unmet = self.rates.unmet_k_t * self.quantum_t
+        credit = self.store.credit_k_t * self.quantum_t
+        arguments = (demand, tables.costs, tables.most, tables.start, unmet, credit, discharge)
+        value = np.zeros((len(tables.most), levels))
+        for _ in range(_SETTLING_LAPS):
+            after = lap(value, *arguments)
+            reached = np.isfinite(after)
+            if not reached.any():
+                return None
+            value = np.where(reached, after, after[reached].max()) - after[reached].min()
+        # Two days back from the cheapest state lies a state of the cycle that the days settle into.
+        state = np.unravel_index(int(np.argmin(value)), value.shape)
+        for _ in range(2):
+            _, firing, stored = path(value, int(state[0]), int(state[1]), *arguments, hold, offset)
+            state = (firing[0], stored[0])
+        value = np.full_like(value, np.inf)
+        value[state] = 0.0
+        cost, firing, stored = path(value, int(state[0]), int(state[1]), *arguments, hold, offset)
+        if not np.isfinite(cost):
+            return None
+        firing = firing[1:]
+        steps = len(demand)
+        mode = np.zeros((len(self.boilers), steps), dtype=np.int64)
+        for t in range(steps):
+            made = min(int(demand[t] + stored[t + 1] - stored[t]), int(tables.most[firing[t]]))
+            for b in range(len(self.boilers)):
+                fires = (firing[t] >> b) & 1
+                mode[b, t] = tables.mode[b][fires][tables.split[firing[t], made, b]]
+        return DaySchedule(cost_k=cost, mode=mode, charging=np.diff(stored) > 0)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class DaySchedule:
+    """States of one day found on the grid; outputs and levels are left to the linear programme."""
+
+    cost_k: float
+    mode: IntArray
+    """Mode index per boiler in service and step."""
+    charging: NDArray[np.bool_]
+
+
+def quantum_t(boilers: tuple[PlanBoiler, ...], step_h: float, wanted_t: float) -> float:
+    """A quantum near `wanted_t` [t] that nearly divides smallest and largest firing outputs per step."""
+    ends = [
+        end * step_h
+        for boiler in boilers
+        for mode in boiler.modes
+        if mode.firing
+        for end in (mode.output_t_h[0], mode.output_t_h[-1])
+    ]
+    if not ends:
+        return wanted_t
+    first = ends[-1]
+    best, best_miss = wanted_t, np.inf
+    for count in range(max(1, ceil(first / (wanted_t * 1.25))), max(2, floor(first * 1.6 / wanted_t) + 1)):
+        quantum = first / count
+        miss = sum(min(end / quantum % 1.0, 1.0 - end / quantum % 1.0) for end in ends) * quantum
+        if miss < best_miss - 1e-12:
+            best, best_miss = quantum, miss
+    return best

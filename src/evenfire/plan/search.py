@@ -1,0 +1,450 @@
+"""Search over boilers, window and volume with valid bounds: the exact method.
+
+A node is a set of boilers, a pressure window (or no vessel) and a range of volumes. Its bound adds the
+fixed cost at the small end to the least operating cost with the large end's vessel, the standing loss
+being the small end's: operation never gets dearer with a larger vessel of the same loss. Bounds are
+refined from cheap to dear, the node with the least bound first. docs/method.md proves each step.
+"""
+
+from __future__ import annotations
+
+import heapq
+import time
+from concurrent.futures import ThreadPoolExecutor
+from dataclasses import dataclass, field, replace
+from itertools import combinations, count
+
+import numpy as np
+from numpy.typing import NDArray
+
+from evenfire.plan.day import NO_STORE, DayProblem, Store, quantum_t
+from evenfire.plan.inputs import (
+    AlternativeRules,
+    PlanInputs,
+    VesselUse,
+    WindowCurves,
+    window_curves,
+)
+from evenfire.plan.outcome import Has, Plan, PlanOutcome, Progress, Stop, Watcher
+from evenfire.plan.polish import FixedDay, plan_cost_k, polished
+from evenfire.plan.tables import mode_costs_k_h
+
+FloatArray = NDArray[np.float64]
+
+_QUANTA_T_PER_H = (0.5, 0.125, 0.0625)
+"""Wanted quantum per hour of step for rough, usual and fine bounds [t/h]."""
+_FINEST_STAGE = len(_QUANTA_T_PER_H)
+_NARROWEST_M3 = 0.25
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class _Node:
+    """Boilers, pressure window and range of volumes, with the bound proven so far."""
+
+    boilers: tuple[str, ...]
+    window: int | None
+    low_m3: float
+    high_m3: float
+    bound_k: float
+    stage: int
+
+
+@dataclass(slots=True)
+class _Incumbent:
+    plan: Plan | None = None
+    cost_k: float = float("inf")
+    tried: set[tuple[tuple[str, ...], int | None, float]] = field(default_factory=set)
+
+
+class Search:
+    """One alternative's search; construct, then ``run``.
+
+    Parameters
+    ----------
+    inputs : PlanInputs
+    rules : AlternativeRules
+    known : tuple of Plan
+        Plans of other alternatives; those that these rules allow are starting points.
+    """
+
+    def __init__(self, inputs: PlanInputs, rules: AlternativeRules, known: tuple[Plan, ...] = ()) -> None:
+        self._inputs = inputs
+        self._rules = rules
+        self._known = known
+        self._windows = window_curves(inputs.vessel_segments)
+        self._bounds: dict[tuple[object, ...], float] = {}
+        self._best = _Incumbent()
+        self._begin = time.monotonic()
+
+    def run(self, gap: float, time_limit_s: float, watch: Watcher | None = None) -> PlanOutcome:
+        """Search until the gap is proven or time is up; Ctrl-C ends it with what it has."""
+        self._begin = time.monotonic()
+        order = count()
+        queue: list[tuple[float, int, _Node]] = [(node.bound_k, next(order), node) for node in self._roots()]
+        heapq.heapify(queue)
+        if not queue:
+            return self._outcome(Stop.INFEASIBLE, None)
+        for plan in self._known:
+            if self._allows(plan):
+                self._offer(plan)
+        stop = Stop.GAP_REACHED
+        closed = float("inf")
+        try:
+            while queue:
+                bound = min(queue[0][0], closed)
+                self._report(watch, bound, queue[0][2])
+                if self._within(gap, bound):
+                    break
+                if time.monotonic() - self._begin > time_limit_s:
+                    stop = Stop.TIME_LIMIT
+                    break
+                _, _, node = heapq.heappop(queue)
+                for child in self._refined(node):
+                    if child is None:
+                        closed = min(closed, node.bound_k)
+                    elif child.bound_k < self._best.cost_k:
+                        heapq.heappush(queue, (child.bound_k, next(order), child))
+            else:
+                if self._best.plan is None and closed == float("inf"):
+                    return self._outcome(Stop.INFEASIBLE, None)
+        except KeyboardInterrupt:
+            stop = Stop.INTERRUPTED
+        bound = min([closed, self._best.cost_k, *(entry[0] for entry in queue)])
+        if stop is Stop.GAP_REACHED and not self._within(gap, bound):
+            stop = Stop.SOLVER_LIMIT
+        return self._outcome(stop, bound)
+
+    def _within(self, gap: float, bound: float) -> bool:
+        cost = self._best.cost_k
+        return bool(np.isfinite(cost)) and cost - bound <= gap * abs(cost)
+
+    def _outcome(self, stop: Stop, bound: float | None) -> PlanOutcome:
+        plan = self._best.plan
+        return PlanOutcome(
+            alternative=self._rules.name,
+            stop=stop,
+            has=Has.NOTHING if plan is None else Has.PLAN,
+            cost_k=None if plan is None else self._best.cost_k,
+            bound_k=bound,
+            plan=plan,
+            largest_violation=0.0,
+            solver="exact recursion with branch and bound",
+            seconds=time.monotonic() - self._begin,
+        )
+
+    def _report(self, watch: Watcher | None, bound: float, node: _Node) -> None:
+        if watch is None:
+            return
+        cost = self._best.cost_k
+        vessel = "no vessel" if node.window is None else f"{node.low_m3:.0f} to {node.high_m3:.0f} m3"
+        watch(
+            Progress(
+                alternative=self._rules.name,
+                cost_k=cost if np.isfinite(cost) else None,
+                bound_k=bound,
+                seconds=time.monotonic() - self._begin,
+                stage=f"{len(node.boilers)} boilers, {vessel}",
+            )
+        )
+
+    # --- the tree -------------------------------------------------------------------------------
+
+    def _roots(self) -> list[_Node]:
+        """One node per set of boilers and vessel segment that can meet the peaks."""
+        inputs, rules = self._inputs, self._rules
+        names = [x.name for x in inputs.boilers if x.name in rules.allowed]
+        new = [name for name in names if not inputs.boiler(name).existing]
+        old = [name for name in names if inputs.boiler(name).existing]
+        optional = [name for name in old if name not in rules.required]
+        kept = [name for name in old if name in rules.required]
+        nodes = []
+        for size in range(len(optional) + 1):
+            for stay in combinations(optional, size):
+                for number in range(rules.fewest_new, min(rules.most_new, len(new)) + 1):
+                    for bought in combinations(new, number):
+                        chosen = {*kept, *stay, *bought}
+                        boilers = tuple(name for name in names if name in chosen)
+                        nodes += self._vessel_nodes(boilers)
+        return nodes
+
+    def _vessel_nodes(self, boilers: tuple[str, ...]) -> list[_Node]:
+        nodes = []
+        if self._rules.vessel is not VesselUse.REQUIRED and self._adequate(boilers, None, 0.0):
+            nodes.append(self._node(boilers, None, 0.0, 0.0))
+        if self._rules.vessel is VesselUse.NONE:
+            return nodes
+        for number, curves in self._windows.items():
+            if not all(self._inputs.boiler(name).pressure_allowed[curves.pressure] for name in boilers):
+                continue
+            high = float(curves.volume_m3[-1])
+            if self._adequate(boilers, curves, high):
+                nodes.append(self._node(boilers, number, self._smallest_adequate_m3(boilers, curves), high))
+        return nodes
+
+    def _adequate(self, boilers: tuple[str, ...], curves: WindowCurves | None, volume: float) -> bool:
+        if not self._rules.adequate:
+            return True
+        firm = sum(self._inputs.boiler(name).rated_t_h for name in boilers)
+        capacity = release = 0.0
+        if curves is not None:
+            capacity = curves.at(curves.capacity_t, volume)
+            release = curves.at(curves.release_t_h, volume)
+        tolerance = 1e-9
+        return firm + release >= self._inputs.peak_t_h - tolerance and all(
+            capacity + cut.duration_h * firm >= cut.energy_t - tolerance for cut in self._inputs.cuts
+        )
+
+    def _smallest_adequate_m3(self, boilers: tuple[str, ...], curves: WindowCurves) -> float:
+        """Smallest volume whose capacity and release meet the peaks: both rise with volume."""
+        low = float(curves.volume_m3[0])
+        if not self._rules.adequate:
+            return low
+        firm = sum(self._inputs.boiler(name).rated_t_h for name in boilers)
+        stored = max((cut.energy_t - cut.duration_h * firm for cut in self._inputs.cuts), default=0.0)
+        needs = ((curves.release_t_h, self._inputs.peak_t_h - firm), (curves.capacity_t, stored))
+        return max(low, *(float(np.interp(need, values, curves.volume_m3)) for values, need in needs))
+
+    def _node(self, boilers: tuple[str, ...], window: int | None, low: float, high: float) -> _Node:
+        node = _Node(boilers=boilers, window=window, low_m3=low, high_m3=high, bound_k=0.0, stage=0)
+        return replace(node, bound_k=self._fixed_k(node) + self._hull_k(node))
+
+    def _refined(self, node: _Node) -> list[_Node | None]:
+        """The node with a dearer bound, or its two halves; None marks a node that cannot be refined."""
+        if node.stage < _FINEST_STAGE - 1 or (
+            node.stage < _FINEST_STAGE and node.high_m3 - node.low_m3 <= _NARROWEST_M3
+        ):
+            bound, services = self._operation_k(node, node.stage)
+            better = replace(
+                node, bound_k=max(node.bound_k, self._fixed_k(node) + bound), stage=node.stage + 1
+            )
+            if better.stage >= _FINEST_STAGE - 1 and better.bound_k < self._best.cost_k:
+                self._try(better, services)
+            return [better]
+        if node.high_m3 - node.low_m3 <= _NARROWEST_M3:
+            return [None]
+        middle = (node.low_m3 + node.high_m3) / 2
+        return [
+            replace(node, high_m3=middle, stage=_FINEST_STAGE - 2),
+            replace(node, low_m3=middle, stage=_FINEST_STAGE - 2),
+        ]
+
+    # --- bounds ---------------------------------------------------------------------------------
+
+    def _fixed_k(self, node: _Node) -> float:
+        total = sum(self._inputs.boiler(name).fixed_cost_k for name in node.boilers)
+        if node.window is not None:
+            curves = self._windows[node.window]
+            total += curves.at(curves.fixed_cost_k, node.low_m3) + self._inputs.vessel_maintenance_k
+        return total
+
+    def _hull_k(self, node: _Node) -> float:
+        """Every tonne at the best average cost of any boiler, or not met."""
+        inputs = self._inputs
+        pressure = self._pressure(node)
+        credit = self._store(node).credit_k_t if node.window is not None else 0.0
+        rates = [inputs.rates.unmet_k_t]
+        for name in node.boilers:
+            boiler = inputs.boiler(name)
+            for mode in boiler.modes:
+                output, cost = mode_costs_k_h(boiler, mode, pressure, inputs.rates)
+                rates += [float(c / q) for q, c in zip(output, cost, strict=True) if q > 0]
+        steam = sum(day.days_per_year * inputs.step_h * float(day.demand_t_h.sum()) for day in inputs.days)
+        return steam * (min(rates) - max(0.0, credit))
+
+    def _pressure(self, node: _Node) -> int:
+        return 0 if node.window is None else self._windows[node.window].pressure
+
+    def _store(self, node: _Node, *, at_m3: float | None = None) -> Store:
+        """The vessel a bound may assume, or the vessel at one volume."""
+        if node.window is None:
+            return NO_STORE
+        curves = self._windows[node.window]
+        high = node.high_m3 if at_m3 is None else at_m3
+        low = node.low_m3 if at_m3 is None else at_m3
+        return Store(
+            capacity_t=curves.at(curves.capacity_t, high),
+            release_t_h=curves.at(curves.release_t_h, high),
+            loss_t_h=curves.at(curves.loss_t_h, low),
+            credit_k_t=self._inputs.rates.fuel_k_mwh * curves.charging_credit_mwh_t,
+        )
+
+    def _problem(
+        self, node: _Node, day: int, service: tuple[str, ...], store: Store, stage: int
+    ) -> DayProblem:
+        inputs = self._inputs
+        boilers = tuple(inputs.boiler(name) for name in service)
+        wanted = _QUANTA_T_PER_H[stage] * inputs.step_h
+        if store.capacity_t == 0.0:
+            wanted /= 8.0
+        return DayProblem(
+            demand_t_h=inputs.days[day].demand_t_h,
+            step_h=inputs.step_h,
+            boilers=boilers,
+            pressure=self._pressure(node),
+            rates=inputs.rates,
+            store=store,
+            quantum_t=quantum_t(boilers, inputs.step_h, wanted),
+        )
+
+    def _day_bound(self, node: _Node, day: int, service: tuple[str, ...], store: Store, stage: int) -> float:
+        """Least cost of one day with these boilers hot, weighted by its days a year [k]."""
+        key = (day, service, self._pressure(node), store, stage)
+        if key not in self._bounds:
+            problem = self._problem(node, day, service, store, stage)
+            self._bounds[key] = self._inputs.days[day].days_per_year * problem.lower_bound()
+        return self._bounds[key]
+
+    def _operation_k(self, node: _Node, stage: int) -> tuple[float, tuple[tuple[str, ...], ...]]:
+        """Least operating cost over which boilers are hot on which day, with that choice."""
+        store = self._store(node)
+        days = range(len(self._inputs.days))
+        choices = [
+            chosen for size in range(len(node.boilers) + 1) for chosen in combinations(node.boilers, size)
+        ]
+        rough = {
+            (day, service): self._rough_day_k(node, day, service, store)
+            for day in days
+            for service in choices
+        }
+        exact: set[tuple[int, tuple[str, ...]]] = set()
+        while True:
+            total, best = self._best_services(node, choices, rough)
+            missing = [(day, best[day]) for day in days if (day, best[day]) not in exact]
+            if not missing:
+                return total, best
+            with ThreadPoolExecutor(2) as pool:
+                values = pool.map(lambda x: self._day_bound(node, x[0], x[1], store, stage), missing)
+                for pair, value in zip(missing, values, strict=True):
+                    rough[pair] = max(rough[pair], value)
+                    exact.add(pair)
+
+    def _rough_day_k(self, node: _Node, day: int, service: tuple[str, ...], store: Store) -> float:
+        """A cheap bound on a day: best average cost, and what the boilers cannot make is not met."""
+        inputs = self._inputs
+        demand = inputs.days[day].demand_t_h
+        most = sum(inputs.boiler(name).rated_t_h for name in service)
+        energy = float(demand.sum()) * inputs.step_h
+        short = max(0.0, energy - most * len(demand) * inputs.step_h)
+        rates = [inputs.rates.unmet_k_t]
+        for name in service:
+            boiler = inputs.boiler(name)
+            for mode in boiler.modes:
+                output, cost = mode_costs_k_h(boiler, mode, self._pressure(node), inputs.rates)
+                rates += [float(c / q) for q, c in zip(output, cost, strict=True) if q > 0]
+        credit = max(0.0, store.credit_k_t)
+        cost = (energy - short) * (min(rates) - credit) + short * (inputs.rates.unmet_k_t - credit)
+        return inputs.days[day].days_per_year * cost
+
+    def _best_services(
+        self,
+        node: _Node,
+        choices: list[tuple[str, ...]],
+        day_cost: dict[tuple[int, tuple[str, ...]], float],
+    ) -> tuple[float, tuple[tuple[str, ...], ...]]:
+        """Cheapest set of hot boilers for every day, cold starts between days included."""
+        inputs = self._inputs
+        days = range(len(inputs.days))
+        pressure = self._pressure(node)
+        price = {
+            name: inputs.rates.fuel_k_mwh
+            * inputs.boiler(name).pressure_factor[pressure]
+            * inputs.boiler(name).cold_start_fuel_mwh
+            for name in node.boilers
+        }
+        ranked = [sorted(choices, key=lambda x, d=day: day_cost[d, x]) for day in days]
+        least = [day_cost[day, ranked[day][0]] for day in days]
+        rest = [sum(least[day:]) for day in range(len(least) + 1)]
+        best_total, best = float("inf"), tuple(order[0] for order in ranked)
+
+        def between(earlier: tuple[tuple[str, ...], ...], service: tuple[str, ...]) -> float:
+            day = len(earlier)
+            total = 0.0
+            for other, hot in enumerate(earlier):
+                total += inputs.transitions_per_year[other, day] * sum(
+                    price[name] for name in service if name not in hot
+                )
+                total += inputs.transitions_per_year[day, other] * sum(
+                    price[name] for name in hot if name not in service
+                )
+            return float(total)
+
+        def descend(earlier: tuple[tuple[str, ...], ...], paid: float) -> None:
+            nonlocal best_total, best
+            day = len(earlier)
+            if day == len(least):
+                if paid < best_total:
+                    best_total, best = paid, earlier
+                return
+            for service in ranked[day]:
+                cost = paid + day_cost[day, service]
+                if cost + rest[day + 1] >= best_total:
+                    break
+                cost += between(earlier, service)
+                if cost + rest[day + 1] < best_total:
+                    descend((*earlier, service), cost)
+
+        descend((), 0.0)
+        return best_total, best
+
+    # --- plans ----------------------------------------------------------------------------------
+
+    def _allows(self, plan: Plan) -> bool:
+        """Whether these rules allow a plan of another alternative."""
+        rules, inputs = self._rules, self._inputs
+        new = sum(not inputs.boiler(name).existing for name in plan.boilers)
+        names = set(plan.boilers)
+        segment = None if plan.segment is None else inputs.vessel_segments[plan.segment]
+        return (
+            rules.required <= names <= rules.allowed
+            and rules.fewest_new <= new <= rules.most_new
+            and (segment is not None or rules.vessel is not VesselUse.REQUIRED)
+            and (segment is None or rules.vessel is not VesselUse.NONE)
+            and self._adequate(
+                plan.boilers, None if segment is None else self._windows[segment.window], plan.volume_m3
+            )
+        )
+
+    def _offer(self, plan: Plan) -> None:
+        cost = plan_cost_k(self._inputs, plan)
+        if cost < self._best.cost_k:
+            self._best.plan, self._best.cost_k = plan, cost
+
+    def _try(self, node: _Node, services: tuple[tuple[str, ...], ...]) -> None:
+        """Make a plan near a node and keep it if it is the best so far."""
+        inputs = self._inputs
+        volume = (node.low_m3 + node.high_m3) / 2
+        key = (node.boilers, node.window, round(volume, 1))
+        if key in self._best.tried:
+            return
+        self._best.tried.add(key)
+        boilers = tuple(inputs.boiler(name) for name in node.boilers)
+        hold = max(max(x.minimum_firing_steps, x.minimum_off_steps) for x in boilers) if boilers else 1
+        store = self._store(node, at_m3=volume)
+        days = []
+        for day, service in enumerate(services):
+            problem = self._problem(node, day, service, store, 1)
+            found = [problem.schedule(hold, offset) for offset in range(hold)]
+            kept = [schedule for schedule in found if schedule is not None]
+            if not kept:
+                return
+            schedule = min(kept, key=lambda x: x.cost_k)
+            mode = np.full((len(boilers), len(inputs.days[day].demand_t_h)), -1, dtype=np.int64)
+            for row, boiler in enumerate(boilers):
+                if boiler.name in service:
+                    mode[row] = schedule.mode[service.index(boiler.name)]
+            days.append(
+                FixedDay(
+                    in_service=tuple(boiler.name in service for boiler in boilers),
+                    mode=mode,
+                    charging=schedule.charging,
+                )
+            )
+        segment, allowed = None, (0.0, 0.0)
+        if node.window is not None:
+            curves = self._windows[node.window]
+            segment = curves.segment_at(volume)
+            low, high = inputs.vessel_segments[segment].volume_m3
+            allowed = (max(low, self._smallest_adequate_m3(node.boilers, curves)), high)
+        plan = polished(inputs, boilers, segment, allowed, tuple(days))
+        if plan is not None:
+            self._offer(plan)
