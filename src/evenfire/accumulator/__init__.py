@@ -1,4 +1,9 @@
-"""Accumulator physics: wet, sliding-pressure steam storage."""
+"""Accumulator physics: wet, sliding-pressure steam storage.
+
+The vessel simulator and its compiled functions live in :mod:`evenfire.accumulator.vessel`,
+:mod:`evenfire.accumulator.balance` and :mod:`evenfire.accumulator.tables`; import them from there, so that
+what needs no compiled code does not load numba.
+"""
 
 from evenfire.accumulator.geometry import (
     VesselShape,
@@ -7,6 +12,7 @@ from evenfire.accumulator.geometry import (
     liquid_volume_m3,
     vessel_shape,
 )
+from evenfire.accumulator.level import fill_after_charging, largest_fill_before_charging
 from evenfire.accumulator.shell import cylinder_thickness_m, shell_mass_kg
 from evenfire.accumulator.window import (
     WindowPerformance,
@@ -19,7 +25,9 @@ __all__ = [
     "VesselShape",
     "WindowPerformance",
     "cylinder_thickness_m",
+    "fill_after_charging",
     "free_surface_m2",
+    "largest_fill_before_charging",
     "level_m",
     "liquid_volume_m3",
     "pressure_at_stored_kg",

@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from evenfire.boiler.fuels import fuel_spec
 from evenfire.boiler.heat import steam_heat_j_kg
-from evenfire.boiler.stack_loss import SIEGERT_COEFFICIENTS, stack_slope_per_k
+from evenfire.boiler.stack_loss import stack_slope_per_k
 from evenfire.errors import out_of_range
 from evenfire.water import flash_steam_kg_m3, liquid_enthalpy_j_kg, saturation
 
@@ -191,9 +191,6 @@ def assumed_ramp_kg_s2(rated_kg_s: float) -> float:
 def assumed_stack_slope_per_k(fuel_kind: str, o2_percent: float = 3.0) -> float:
     """Efficiency (net) lost per kelvin of hotter stack [1/K] by the Siegert formula; 0 for electricity.
 
-    Heavy fuel oil takes the coefficients of gas oil and wood those of natural gas, for want of published
-    ones; the error is below a tenth of the slope.
-
     Raises
     ------
     OutOfRangeError
@@ -201,6 +198,4 @@ def assumed_stack_slope_per_k(fuel_kind: str, o2_percent: float = 3.0) -> float:
     """
     if fuel_spec(fuel_kind).kind == "electricity":
         return 0.0
-    substitutes = {"heavy_fuel_oil": "gas_oil", "wood": "natural_gas"}
-    kind = fuel_kind if fuel_kind in SIEGERT_COEFFICIENTS else substitutes[fuel_kind]
-    return stack_slope_per_k(kind, o2_percent)
+    return stack_slope_per_k(fuel_kind, o2_percent)

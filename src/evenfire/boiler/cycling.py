@@ -8,19 +8,26 @@ import numpy.typing as npt
 from evenfire.boiler.curve import lowest_firing_efficiency_lhv
 from evenfire.errors import out_of_range
 from evenfire.plant import BoilerSpec
+from evenfire.water import saturation
 
 FloatArray = npt.NDArray[np.float64]
 
 
 def cycling_starts_per_s(
-    load_kg_s: npt.ArrayLike, firing_kg_s: float, buffer_kg: float, minimum_off_s: float = 0.0
+    load_kg_s: npt.ArrayLike,
+    firing_kg_s: float,
+    buffer_kg: float,
+    minimum_off_s: float = 0.0,
+    standing_kg_s: float = 0.0,
 ) -> FloatArray:
     """Burner starts per second when a load below the firing output is met by on/off firing.
 
     The buffer empties in B/q with the burner off and fills in B/(Q - q) with it on, so
-    n = q (Q - q) / (B Q). Where B/q is shorter than the minimum off time, the burner stays off for that
-    time instead: n = (Q - q) / (Q t_off), and the pressure falls below the cut-in pressure by the factor
-    q t_off / B of the band.
+    n = q (Q - q) / (B Q). The standing loss empties the buffer too while the burner is off: with it as steam
+    q0, the off time is B/(q + q0) and n = (q + q0)(Q - q) / (B (Q + q0)), which leaves q0/B or nearly so at
+    no load: a boiler on hot standby fires now and then. Where the off time is shorter than the minimum, the
+    burner stays off for that: n = (Q - q) / (t_off (Q + q0)), and the pressure falls below the cut-in
+    pressure, to (q + q0) t_off / B times the band under cut-out.
 
     Parameters
     ----------
@@ -32,6 +39,8 @@ def cycling_starts_per_s(
         Steam the boiler's water gives between cut-out and cut-in pressure B [kg].
     minimum_off_s : float
         Shortest burner-off time [s].
+    standing_kg_s : float
+        Standing loss as steam q0 [kg/s].
 
     Returns
     -------
@@ -64,10 +73,23 @@ def cycling_starts_per_s(
         worst = float(load[~inside].flat[0]) if load.ndim else float(load)
         raise out_of_range("P111", "load of a cycling burner", worst, "kg/s", 0.0, firing_kg_s)
     spare = np.maximum(firing_kg_s - load, 0.0)
-    starts = load * spare / (buffer_kg * firing_kg_s)
+    gross = firing_kg_s + standing_kg_s
+    starts = (load + standing_kg_s) * spare / (buffer_kg * gross)
     if minimum_off_s > 0.0:
-        starts = np.minimum(starts, spare / (firing_kg_s * minimum_off_s))
+        starts = np.minimum(starts, spare / (gross * minimum_off_s))
     return np.asarray(starts)
+
+
+def standing_steam_kg_s(spec: BoilerSpec, working_pa: float) -> float:
+    """The standing loss as steam of the working pressure, loss over latent heat [kg/s].
+
+    Raises
+    ------
+    OutOfRangeError
+        P101 for a pressure outside the tables.
+    """
+    at = saturation(working_pa)
+    return spec.standing_loss_w / float(at.enthalpy_vapour_j_kg - at.enthalpy_liquid_j_kg)
 
 
 def start_fuel_j_lhv(spec: BoilerSpec, working_pa: float) -> float:

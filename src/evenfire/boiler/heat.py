@@ -56,6 +56,68 @@ def steam_heat_j_kg(working_pa: float, feedwater_k: float, blowdown_fraction: fl
     return steam + blowdown_fraction * (float(at.enthalpy_liquid_j_kg) - feed)
 
 
+def blowdown_over_steam(blowdown_over_feedwater: float) -> float:
+    """Blowdown over steam [1] from blowdown over feedwater [1]: r / (1 - r).
+
+    Raises
+    ------
+    OutOfRangeError
+        P112 for a ratio outside 0 to 1/3.
+
+    References
+    ----------
+    US DOE Steam Tip Sheet 9: feedwater = steam / (1 - blowdown over feedwater).
+
+    Examples
+    --------
+    3 200 of 53 200 lb/h of feedwater are 6.4 % of the steam.
+
+    >>> round(blowdown_over_steam(3200 / 53200), 6)
+    0.064
+    """
+    largest = LARGEST_BLOWDOWN_FRACTION / (1.0 + LARGEST_BLOWDOWN_FRACTION)
+    if not 0.0 <= blowdown_over_feedwater <= largest:
+        raise out_of_range("P112", "blowdown over feedwater", blowdown_over_feedwater, "", 0.0, largest)
+    return blowdown_over_feedwater / (1.0 - blowdown_over_feedwater)
+
+
+def deaerator_steam_share(
+    feedwater_k: float, water_in_k: float, working_pa: float, blowdown_fraction: float
+) -> float:
+    """Steam the deaerator takes over steam the boiler makes [1].
+
+    Water at ``water_in_k`` is heated to ``feedwater_k`` by condensing boiler steam in it: per kilogram of
+    feedwater (h_feed - h_in)/(h'' - h_in), times 1 + b kilograms of feedwater per kilogram of steam. A record
+    metered behind the deaerator's branch must be divided by one minus this share to be the boilers' output;
+    a record metered at the boilers holds it already.
+
+    Raises
+    ------
+    OutOfRangeError
+        P101 to P103 for water states outside the tables, P112 for a blowdown fraction outside 0 to 0.5, P102
+        for water that enters hotter than it leaves.
+
+    References
+    ----------
+    Heat and mass balance of a direct-contact heater; vent steam left out.
+
+    Examples
+    --------
+    >>> round(deaerator_steam_share(378.15, 333.15, 10e5, 0.04), 4)
+    0.0778
+    """
+    if not 0.0 <= blowdown_fraction <= LARGEST_BLOWDOWN_FRACTION:
+        raise out_of_range(
+            "P112", "blowdown over steam", blowdown_fraction, "", 0.0, LARGEST_BLOWDOWN_FRACTION
+        )
+    if water_in_k > feedwater_k:
+        raise out_of_range("P102", "water into the deaerator", water_in_k, "K", 273.16, feedwater_k)
+    entering = float(liquid_enthalpy_j_kg(water_in_k, working_pa))
+    leaving = float(liquid_enthalpy_j_kg(feedwater_k, working_pa))
+    steam = float(saturation(working_pa).enthalpy_vapour_j_kg)
+    return (1.0 + blowdown_fraction) * (leaving - entering) / (steam - entering)
+
+
 def efficiency_shift(spec: BoilerSpec, working_pa: float) -> float:
     """Efficiency gained (positive) or lost (negative) by working at another pressure than the points' [1].
 

@@ -8,7 +8,7 @@ import numpy as np
 import numpy.typing as npt
 
 from evenfire.boiler.curve import convex_pieces, fuel_curve, lowest_firing_efficiency_lhv
-from evenfire.boiler.cycling import cycling_starts_per_s
+from evenfire.boiler.cycling import cycling_starts_per_s, standing_steam_kg_s
 from evenfire.plant import BoilerSpec
 
 FloatArray = npt.NDArray[np.float64]
@@ -37,7 +37,8 @@ class OperatingMode:
 def operating_modes(spec: BoilerSpec, working_pa: float, feedwater_k: float) -> tuple[OperatingMode, ...]:
     """Hot standby, cycling and firing of one boiler, each convex in the output.
 
-    - ``hot standby``: no output, fuel makes good the standing loss at the efficiency of lowest firing;
+    - ``hot standby``: no output, fuel makes good the standing loss at the efficiency of lowest firing, with
+      the few burner starts that takes;
     - ``cycling 1`` to ``cycling 4``: on/off firing below rated/turndown. Fuel is the time share q/Q of
       lowest firing plus the share 1 - q/Q of the standing loss; starts follow the parabola of
       :func:`cycling_starts_per_s`, linear between five points;
@@ -71,6 +72,11 @@ def operating_modes(spec: BoilerSpec, working_pa: float, feedwater_k: float) -> 
     curve = fuel_curve(spec, working_pa, feedwater_k)
     standing_w = spec.standing_loss_w / lowest_firing_efficiency_lhv(spec, working_pa)
     lowest_kg_s, lowest_w = float(curve.output_kg_s[0]), float(curve.fuel_w_lhv[0])
+    loads = np.linspace(0.0, lowest_kg_s, CYCLING_PARTS + 1)
+    starts = cycling_starts_per_s(
+        loads, lowest_kg_s, spec.buffer_kg, spec.minimum_off_s, standing_steam_kg_s(spec, working_pa)
+    )
+    fuel = standing_w + loads / lowest_kg_s * (lowest_w - standing_w)
     modes = [
         OperatingMode(
             name="hot standby",
@@ -79,13 +85,10 @@ def operating_modes(spec: BoilerSpec, working_pa: float, feedwater_k: float) -> 
             high_kg_s=0.0,
             output_kg_s=np.array([0.0]),
             fuel_w_lhv=np.array([standing_w]),
-            starts_per_s_low=0.0,
-            starts_per_s_high=0.0,
+            starts_per_s_low=float(starts[0]),
+            starts_per_s_high=float(starts[0]),
         )
     ]
-    loads = np.linspace(0.0, lowest_kg_s, CYCLING_PARTS + 1)
-    starts = cycling_starts_per_s(loads, lowest_kg_s, spec.buffer_kg, spec.minimum_off_s)
-    fuel = standing_w + loads / lowest_kg_s * (lowest_w - standing_w)
     for part in range(CYCLING_PARTS):
         span = slice(part, part + 2)
         modes.append(
