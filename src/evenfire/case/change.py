@@ -70,8 +70,10 @@ def numeric_paths(raw: Mapping[str, Any]) -> tuple[str, ...]:
 
     Examples
     --------
-    >>> numeric_paths({"existing_boiler": [{"name": "Old"}]})[0]
-    'existing_boiler."Old".rating_kg_h'
+    >>> numeric_paths({"money": {}})[:2]
+    ('money.horizon_years', 'money.discount_rate_percent')
+    >>> 'existing_boiler."Old".rating_kg_h' in numeric_paths({"existing_boiler": [{"name": "Old"}]})
+    True
     """
     return tuple(_path(place, raw, by_name=True) for place, _ in _numeric_places(raw, CaseFile, ()))
 

@@ -184,16 +184,16 @@ def _type_problems(boiler: BoilerType, place: str, draft: Draft) -> Iterator[Pro
         )
     if draft.fuel is None:
         return
-    for position, point in enumerate(boiler.efficiency_points):
-        net = net_efficiency(point.efficiency_percent, boiler.calorific_basis, draft.fuel)
-        if net > 1.0:
-            yield Problem(
-                code="C117",
-                where=f"{place} efficiency_points[{position}].efficiency_percent",
-                found=f"{point.efficiency_percent:g} % on gross (hhv) is {100.0 * net:.1f} % on net"
-                " calorific value",
-                allowed="cannot exceed 100 %; a maker's figure is mostly net, then calorific_basis = 'lhv'",
-            )
+    best = max(boiler.efficiency_points, key=lambda point: point.efficiency_percent)
+    net = net_efficiency(best.efficiency_percent, boiler.calorific_basis, draft.fuel)
+    if net > 1.0:
+        yield Problem(
+            code="C117",
+            where=f"{place} efficiency_points",
+            found=f"{best.efficiency_percent:g} % on gross (hhv) at {best.load_percent:g} % load is"
+            f" {100.0 * net:.1f} % on net calorific value",
+            allowed="cannot exceed 100 %; a maker's figure is mostly net, then calorific_basis = 'lhv'",
+        )
 
 
 def _fuel_problems(draft: Draft) -> Iterator[Problem]:

@@ -4,12 +4,12 @@ from __future__ import annotations
 
 import difflib
 from collections.abc import Iterable, Mapping
-from typing import Any, Literal, get_args, get_origin
+from typing import Any, get_args
 
 from pydantic import ValidationError
 from pydantic.fields import FieldInfo
 
-from evenfire.case.schema_section import Section, field_at, section_of, unit_of
+from evenfire.case.schema_section import Section, choices_of, field_at, form_of, is_list, section_of, unit_of
 from evenfire.errors import Problem
 
 Location = tuple[str | int, ...]
@@ -47,16 +47,16 @@ def with_unit(value: object, unit: str) -> str:
 
 def accepted(field: FieldInfo) -> str:
     """What a key accepts, in words: kind of value, range and unit, or the list of choices."""
-    choices = _choices(field.annotation)
+    choices = choices_of(field.annotation)
     if choices:
         each = " or ".join(f"'{choice}'" for choice in choices)
-        return f"a list of {each}" if _is_list(field.annotation) else each
+        return f"a list of {each}" if is_list(field.annotation) else each
     if section_of(field) is not None:
-        return "a list of tables" if _is_list(field.annotation) else "a table"
-    if _is_list(field.annotation):
+        return "a list of tables" if is_list(field.annotation) else "a table"
+    if is_list(field.annotation):
         return "a list of numbers"
     if str in (field.annotation, *get_args(field.annotation)):
-        return "text"
+        return ", ".join(filter(None, ("text", form_of(field))))
     limits = _limits(field)
     whole = int in (field.annotation, *get_args(field.annotation))
     kind = "a whole number" if whole else "a number"
@@ -65,28 +65,17 @@ def accepted(field: FieldInfo) -> str:
 
 
 def _limits(field: FieldInfo) -> str:
-    low = high = ""
-    for limit in field.metadata:
-        for attribute, words in (("ge", "at least"), ("gt", "above")):
-            if getattr(limit, attribute, None) is not None:
-                low = f"{words} {getattr(limit, attribute):.10g}"
-        for attribute, words in (("le", "at most"), ("lt", "below")):
-            if getattr(limit, attribute, None) is not None:
-                high = f"{words} {getattr(limit, attribute):.10g}"
-    return " and ".join(part for part in (low, high) if part)
-
-
-def _choices(annotation: Any) -> tuple[str, ...]:
-    if get_origin(annotation) is Literal:
-        return get_args(annotation)
-    for part in get_args(annotation):
-        if found := _choices(part):
-            return found
-    return ()
-
-
-def _is_list(annotation: Any) -> bool:
-    return get_origin(annotation) in (tuple, list)
+    """The range of a number in words; empty where there is none."""
+    found = {
+        side: getattr(limit, side)
+        for limit in field.metadata
+        for side in ("ge", "gt", "le", "lt")
+        if getattr(limit, side, None) is not None
+    }
+    if "ge" in found and "le" in found:
+        return f"from {found['ge']:.10g} to {found['le']:.10g}"
+    words = {"ge": "at least", "gt": "above", "le": "at most", "lt": "below"}
+    return " and ".join(f"{words[side]} {found[side]:.10g}" for side in words if side in found)
 
 
 def key_path(location: Location) -> str:
@@ -126,52 +115,28 @@ def _problem(
     if kind == "extra_forbidden":
         return _unknown_key(location, section, here, elsewhere)
     field = field_at(section, location)
-    allowed = f"must be {_accepted_at(section, location)}"
-    unit = unit_of(field) if field is not None else ""
+    allowed = f"must be {accepted(field) if field is not None else 'a table'}"
+    shown = with_unit(found, unit_of(field)) if field is not None else written(found)
     if kind == "missing":
         return Problem(code="C104", where=here, found="missing", allowed=f"state it: {allowed}")
-    if kind in _RANGE_KINDS:
-        return Problem(code="C106", where=here, found=f"found {with_unit(found, unit)}", allowed=allowed)
-    if kind == "literal_error":
-        hint = (
-            nearest(found, _choices(field.annotation)) if field is not None and isinstance(found, str) else ""
-        )
-        return Problem(
-            code="C107",
-            where=here,
-            found=f"found {written(found)}",
-            allowed=" ".join(filter(None, (allowed, hint))),
-        )
-    if kind == "string_pattern_mismatch" and field is not None:
-        return Problem(
-            code="C108", where=here, found=f"found {written(found)}", allowed=str(field.description)
-        )
+    if kind == "literal_error" and field is not None:
+        hint = nearest(found, choices_of(field.annotation)) if isinstance(found, str) else ""
+        offer = "; ".join(filter(None, (allowed, hint)))
+        return Problem(code="C107", where=here, found=f"found {shown}", allowed=offer)
     if kind in ("too_short", "string_too_short"):
         return Problem(code="C109", where=here, found="empty", allowed="must hold at least one entry")
-    return Problem(code="C105", where=here, found=f"found {written(found)}", allowed=allowed)
+    return Problem(code=_CODES.get(kind, "C105"), where=here, found=f"found {shown}", allowed=allowed)
 
 
-_RANGE_KINDS = frozenset(
-    {"greater_than", "greater_than_equal", "less_than", "less_than_equal", "finite_number"}
-)
-
-
-def _accepted_at(section: type[Section], location: Location) -> str:
-    field = field_at(section, location)
-    if field is None:
-        return "a table"
-    if location and isinstance(location[-1], int) and section_of(field) is not None:
-        return "a table"
-    if location and isinstance(location[-1], int):
-        choices = _choices(field.annotation)
-        return " or ".join(f"'{choice}'" for choice in choices) if choices else _number_in_list(field)
-    return accepted(field)
-
-
-def _number_in_list(field: FieldInfo) -> str:
-    """What an entry of a list of numbers accepts."""
-    entry = get_args(field.annotation)[0]
-    return accepted(FieldInfo.from_annotation(entry))
+_CODES = {
+    "greater_than": "C106",
+    "greater_than_equal": "C106",
+    "less_than": "C106",
+    "less_than_equal": "C106",
+    "finite_number": "C106",
+    "string_pattern_mismatch": "C108",
+}
+"""Code by pydantic's kind of defect; every other kind is a value of the wrong kind."""
 
 
 def _unknown_key(

@@ -63,7 +63,7 @@ class BoilerType(Section):
         tuple[LoadPoint, ...],
         entry(
             "Efficiency at several loads, rising in load_percent, from the smallest continuous firing load"
-            " (100 % / turndown_ratio) or below it to 100 %; straight lines between.",
+            " (100 % / turndown_ratio) or below it to 100 %; fuel runs straight between the points.",
             shortest=1,
         ),
     ]
@@ -193,7 +193,7 @@ class RatedBoiler(Section):
     ]
 
 
-class ExistingBoiler(RatedBoiler, BoilerType):
+class ExistingBoiler(BoilerType, RatedBoiler):
     """A boiler that stands on the site."""
 
     name: Annotated[str, entry("What the site calls it; unique in the case.", shortest=1)]

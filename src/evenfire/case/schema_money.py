@@ -13,13 +13,19 @@ class Money(Section):
     """How amounts of different years are put on one basis, and the prices that are not fuel."""
 
     currency: Annotated[
-        str, entry("Currency of every amount in the case, as its three-letter code.", pattern="^[A-Z]{3}$")
+        str,
+        entry(
+            "Currency of every amount in the case.",
+            pattern="^[A-Z]{3}$",
+            form="three capital letters such as EUR",
+        ),
     ]
     price_date: Annotated[
         str,
         entry(
-            "Date of every price in the case, as text: 'YYYY-MM' or 'YYYY-MM-DD'.",
+            "Date of every price in the case.",
             pattern=r"^\d{4}-\d{2}(-\d{2})?$",
+            form="in quotes, 2026-10 or 2026-10-31",
         ),
     ]
     horizon_years: Annotated[

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from typing import Any, get_args
+from types import UnionType
+from typing import Any, Literal, get_args, get_origin
 
 from pydantic import BaseModel, ConfigDict, Field
 from pydantic.fields import FieldInfo
@@ -44,23 +45,40 @@ def quantity(
 
 
 def entry(
-    meaning: str, *, pattern: str | None = None, shortest: int | None = None, when_left_out: str | None = None
+    meaning: str,
+    *,
+    pattern: str | None = None,
+    form: str | None = None,
+    shortest: int | None = None,
+    when_left_out: str | None = None,
 ) -> Any:
-    """The annotation of a key that is not a number: meaning, text pattern, least length."""
-    extra: dict[str, Any] | None = {"assumed": when_left_out} if when_left_out is not None else None
-    return Field(description=meaning, pattern=pattern, min_length=shortest, json_schema_extra=extra)
+    """The annotation of a key that is not a number: meaning, pattern and form of text, least length."""
+    extra: dict[str, Any] = {}
+    if form is not None:
+        extra["form"] = form
+    if when_left_out is not None:
+        extra["assumed"] = when_left_out
+    return Field(description=meaning, pattern=pattern, min_length=shortest, json_schema_extra=extra or None)
 
 
 def unit_of(field: FieldInfo) -> str:
     """Unit of a numeric key; empty for text, lists and tables."""
-    extra = field.json_schema_extra
-    return str(extra.get("unit", "")) if isinstance(extra, dict) else ""
+    return _extra(field, "unit")
 
 
 def assumption_of(field: FieldInfo) -> str:
     """In words, what is computed where the key is left out; empty where nothing is."""
+    return _extra(field, "assumed")
+
+
+def form_of(field: FieldInfo) -> str:
+    """In words, how the text of a key must look; empty where any text will do."""
+    return _extra(field, "form")
+
+
+def _extra(field: FieldInfo, name: str) -> str:
     extra = field.json_schema_extra
-    return str(extra.get("assumed", "")) if isinstance(extra, dict) else ""
+    return str(extra.get(name, "")) if isinstance(extra, dict) else ""
 
 
 def section_of(field: FieldInfo) -> type[Section] | None:
@@ -75,14 +93,38 @@ def _sections_in(annotation: Any) -> Iterator[type[Section]]:
         yield from _sections_in(part)
 
 
+def is_list(annotation: Any) -> bool:
+    """Whether a key holds a list, also where it may be left out."""
+    return get_origin(annotation) is tuple or any(is_list(part) for part in _alternatives(annotation))
+
+
+def choices_of(annotation: Any) -> tuple[str, ...]:
+    """The words a key accepts, directly or as entries of a list; empty where it is not a choice."""
+    if get_origin(annotation) is Literal:
+        return get_args(annotation)
+    return next(filter(None, map(choices_of, get_args(annotation))), ())
+
+
+def _alternatives(annotation: Any) -> tuple[Any, ...]:
+    return get_args(annotation) if isinstance(annotation, UnionType) else ()
+
+
 def field_at(section: type[Section], location: tuple[str | int, ...]) -> FieldInfo | None:
-    """The key at a location inside a section, list positions skipped; None where there is none."""
-    keys = [step for step in location if isinstance(step, str)]
+    """The key, or the entry of a list, at a location inside a section; None where there is none."""
     field: FieldInfo | None = None
     inside: type[Section] | None = section
-    for key in keys:
-        if inside is None or key not in inside.model_fields:
-            return None
-        field = inside.model_fields[key]
-        inside = section_of(field)
+    for step in location:
+        if isinstance(step, int):
+            field = _entry_of(field) if field is not None else None
+        else:
+            field = inside.model_fields.get(step) if inside is not None else None
+        inside = section_of(field) if field is not None else None
     return field
+
+
+def _entry_of(field: FieldInfo) -> FieldInfo | None:
+    """One entry of a list as if it were a key of its own."""
+    for part in (field.annotation, *_alternatives(field.annotation)):
+        if get_origin(part) is tuple:
+            return FieldInfo.from_annotation(get_args(part)[0])
+    return None
