@@ -46,5 +46,18 @@ def case_json_schema() -> dict[str, Any]:
     >>> case_json_schema()["properties"]["existing_boiler"]["type"]
     'array'
     """
-    schema = CaseFile.model_json_schema()
+    schema = _without_null(CaseFile.model_json_schema())
     return {"$schema": "https://json-schema.org/draft/2020-12/schema", **schema}
+
+
+def _without_null(node: Any) -> Any:
+    """The schema without null, which TOML does not know: a key that may be absent is not required."""
+    if isinstance(node, list):
+        return [_without_null(each) for each in node if each != {"type": "null"}]
+    if not isinstance(node, dict):
+        return node
+    cleaned = {name: _without_null(each) for name, each in node.items() if each is not None}
+    if len(cleaned.get("anyOf", ())) == 1:
+        (only,) = cleaned.pop("anyOf")
+        return {**only, **cleaned}
+    return cleaned
