@@ -35,41 +35,42 @@ class CashFlow:
     ``grants`` and the two lines of tax stand only where the terms ask for them.
     """
 
-    @property
-    def yearly_total(self) -> FloatArray:
-        """Cost of each year [currency], shape (horizon + 1,)."""
-        return self._total(tuple(self.lines))
-
-    @property
-    def yearly_running(self) -> FloatArray:
-        """Running cost of each year with its tax [currency], shape (horizon + 1,)."""
-        return self._total((*RUNNING_LINES, RUNNING_TAX_LINE))
-
-    @property
-    def yearly_capital(self) -> FloatArray:
-        """Investment, replacement, residual value, grants and their tax [currency], shape (horizon + 1,)."""
-        return self._total(PURCHASE_LINES)
-
-    @property
-    def investment(self) -> float:
-        """Outlay of year 0 with contingency, before any grant [currency]."""
-        return float(self.lines["investment"][0])
-
-    @property
-    def present_cost(self) -> float:
-        """Net present cost over the horizon [currency]."""
-        return sum(self.line_present_cost(name) for name in self.lines)
-
-    def line_present_cost(self, name: str) -> float:
-        """Present cost over the horizon of one line [currency]."""
-        return float(discount_factors(self.finance) @ self.lines[name])
-
-    def _total(self, names: tuple[str, ...]) -> FloatArray:
+    def yearly(self, *names: str) -> FloatArray:
+        """Sum of the named lines in each year [currency], shape (horizon + 1,); absent ones are zero."""
         total = np.zeros(self.finance.horizon_years + 1)
         for name in names:
             if name in self.lines:
                 total += self.lines[name]
         return total
+
+    @property
+    def yearly_total(self) -> FloatArray:
+        """Cost of each year [currency], shape (horizon + 1,)."""
+        return self.yearly(*self.lines)
+
+    @property
+    def yearly_running(self) -> FloatArray:
+        """Running cost of each year with its tax [currency], shape (horizon + 1,)."""
+        return self.yearly(*RUNNING_LINES, RUNNING_TAX_LINE)
+
+    @property
+    def yearly_capital(self) -> FloatArray:
+        """Investment, replacement, residual value, grants and their tax [currency], shape (horizon + 1,)."""
+        return self.yearly(*PURCHASE_LINES)
+
+    @property
+    def investment(self) -> float:
+        """Outlay of year 0 with contingency, before any grant [currency]."""
+        return float(self.yearly("investment")[0])
+
+    @property
+    def present_cost(self) -> float:
+        """Net present cost over the horizon [currency]."""
+        return float(discount_factors(self.finance) @ self.yearly_total)
+
+    def line_present_cost(self, name: str) -> float:
+        """Present cost over the horizon of one line [currency]; zero for a line that does not stand."""
+        return float(discount_factors(self.finance) @ self.yearly(name))
 
 
 def cash_flow(

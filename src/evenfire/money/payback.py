@@ -73,7 +73,21 @@ def payback(reference: CashFlow, alternative: CashFlow) -> PaybackResult:
 
     Examples
     --------
-    See the tests for worked cases; the note is empty in the ordinary one.
+    >>> from evenfire.money.terms import Finance
+    >>> finance = Finance(
+    ...     currency="EUR", price_date="2026-10", horizon_years=15, discount_rate=0.08, rate_basis="nominal"
+    ... )
+    >>> today = CashFlow(finance=finance, lines={"fuel": np.array([0.0] + 15 * [60_000.0])})
+    >>> storage = CashFlow(
+    ...     finance=finance,
+    ...     lines={
+    ...         "investment": np.array([100_000.0] + 15 * [0.0]),
+    ...         "fuel": np.array([0.0] + 15 * [35_000.0]),
+    ...     },
+    ... )
+    >>> result = payback(today, storage)
+    >>> result.simple_years, result.discounted_years
+    (4.0, 5.011568)
     """
     saving = yearly_saving(reference, alternative)
     magnitude = np.abs(reference.yearly_total).sum() + np.abs(alternative.yearly_total).sum()
@@ -89,7 +103,7 @@ def payback(reference: CashFlow, alternative: CashFlow) -> PaybackResult:
     discounted_saving = saving * discount_factors(reference.finance)
     simple = _years_to_recover(saving, noise)
     discounted = _years_to_recover(discounted_saving, noise)
-    if simple is None and discounted is None:
+    if simple is None:
         note = NEVER
     elif discounted is None:
         note = NEVER_DISCOUNTED
@@ -103,13 +117,16 @@ def payback(reference: CashFlow, alternative: CashFlow) -> PaybackResult:
 
 
 def _without_residual_value(reference: CashFlow, alternative: CashFlow) -> FloatArray:
-    residual = alternative.lines["residual value"] - reference.lines["residual value"]
+    residual = alternative.yearly("residual value") - reference.yearly("residual value")
     return (yearly_saving(reference, alternative) + residual) * discount_factors(reference.finance)
 
 
 def _years_to_recover(saving: FloatArray, noise: float) -> float | None:
     cumulated = np.cumsum(saving)
-    outlay = int(np.argmax(cumulated < -noise))
+    behind = cumulated < -noise
+    if not behind.any():
+        return 0.0
+    outlay = int(np.argmax(behind))
     recovered = np.flatnonzero(cumulated[outlay:] >= -noise)
     if recovered.size == 0:
         return None

@@ -111,3 +111,19 @@ class Investment:
     residual_value: float | None = None
     """Value at the horizon at the price date's prices; None for the straight-line unused part."""
     grant: Grant | None = None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class CostBasis:
+    """How a published cost correlation is brought to the case's place and date."""
+
+    correlation: str
+    """Name of one of ``cost_basis.CORRELATIONS``."""
+    cost_index: float
+    """The correlation's own cost index at the case's price date [1]."""
+    currency_per_usd: float
+    """The case's currency for one US dollar at the price date."""
+    location_factor: float = 1.0
+    """Cost in the case's region over cost on the US Gulf Coast [1]."""
+    installation_factor: float | None = None
+    """Installed over purchased cost [1]; None for the factor that the source gives."""
