@@ -52,7 +52,7 @@ def boiler(
         modes.append(
             PlanMode(
                 name="cycling",
-                firing=False,
+                lit=ends[0] >= low / 2,
                 output_t_h=tuple(ends),
                 fuel_mwh_h=tuple(fuel),
                 starts_per_h_low=starts[0],
@@ -62,7 +62,7 @@ def boiler(
     modes.append(
         PlanMode(
             name="firing",
-            firing=True,
+            lit=True,
             output_t_h=(low, middle, rated),
             fuel_mwh_h=(fuel_low, fuel_middle, fuel_high),
             starts_per_h_low=0.0,

@@ -131,21 +131,21 @@ class DayProblem:
         # Two days back from the cheapest state lies a state of the cycle that the days settle into.
         state = np.unravel_index(int(np.argmin(value)), value.shape)
         for _ in range(2):
-            _, firing, stored = path(value, int(state[0]), int(state[1]), *arguments, hold, offset)
-            state = (firing[0], stored[0])
+            _, lit, stored = path(value, int(state[0]), int(state[1]), *arguments, hold, offset)
+            state = (lit[0], stored[0])
         value = np.full_like(value, np.inf)
         value[state] = 0.0
-        cost, firing, stored = path(value, int(state[0]), int(state[1]), *arguments, hold, offset)
+        cost, lit, stored = path(value, int(state[0]), int(state[1]), *arguments, hold, offset)
         if not np.isfinite(cost):
             return None
-        firing = firing[1:]
+        lit = lit[1:]
         steps = len(demand)
         mode = np.zeros((len(self.boilers), steps), dtype=np.int64)
         for t in range(steps):
-            made = min(int(demand[t] + stored[t + 1] - stored[t]), int(tables.most[firing[t]]))
+            made = min(int(demand[t] + stored[t + 1] - stored[t]), int(tables.most[lit[t]]))
             for b in range(len(self.boilers)):
-                fires = (firing[t] >> b) & 1
-                mode[b, t] = tables.mode[b][fires][tables.split[firing[t], made, b]]
+                fires = (lit[t] >> b) & 1
+                mode[b, t] = tables.mode[b][fires][tables.split[lit[t], made, b]]
         return DaySchedule(cost_k=cost, mode=mode, charging=np.diff(stored) > 0)
 
 
@@ -160,12 +160,12 @@ class DaySchedule:
 
 
 def quantum_t(boilers: tuple[PlanBoiler, ...], step_h: float, wanted_t: float) -> float:
-    """A quantum near `wanted_t` [t] that nearly divides smallest and largest firing outputs per step."""
+    """A quantum near `wanted_t` [t] that nearly divides smallest and largest lit outputs per step."""
     ends = [
         end * step_h
         for boiler in boilers
         for mode in boiler.modes
-        if mode.firing
+        if mode.lit
         for end in (mode.output_t_h[0], mode.output_t_h[-1])
     ]
     if not ends:

@@ -21,7 +21,9 @@ class PlanMode:
     """One operating mode of a hot boiler: a range of output with a convex fuel curve."""
 
     name: str
-    firing: bool
+    """``cycling`` or ``firing``."""
+    lit: bool
+    """Whether the burner counts as lit: a burner start leads from a mode that is not to one that is."""
     output_t_h: tuple[float, ...]
     """Breakpoints, rising; a single one for a mode without range."""
     fuel_mwh_h: tuple[float, ...]

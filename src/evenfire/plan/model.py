@@ -130,11 +130,11 @@ def _add_boilers(m: Any, boilers: list[PlanBoiler]) -> None:
         m.T,
         rule=lambda m, b, k, i, d, t: m.part[b, k, i, d, t] <= width(b, k, i) * m.mode[b, k, d, t],
     )
-    m.firing = pyo.Expression(
+    m.lit = pyo.Expression(
         m.B,
         m.D,
         m.T,
-        rule=lambda m, b, d, t: sum(m.mode[b, k, d, t] for k, x in enumerate(boilers[b].modes) if x.firing),
+        rule=lambda m, b, d, t: sum(m.mode[b, k, d, t] for k, x in enumerate(boilers[b].modes) if x.lit),
     )
     m.output = pyo.Expression(
         m.B,
@@ -154,7 +154,7 @@ def _add_boilers(m: Any, boilers: list[PlanBoiler]) -> None:
         m.D,
         m.T,
         rule=lambda m, b, d, t: (
-            m.firing[b, d, t] - m.firing[b, d, (t - 1) % steps] == m.start[b, d, t] - m.stop[b, d, t]
+            m.lit[b, d, t] - m.lit[b, d, (t - 1) % steps] == m.start[b, d, t] - m.stop[b, d, t]
         ),
     )
 
@@ -166,7 +166,7 @@ def _add_boilers(m: Any, boilers: list[PlanBoiler]) -> None:
         m.D,
         m.T,
         rule=lambda m, b, d, t: (
-            sum(m.start[b, d, i] for i in window(t, boilers[b].minimum_firing_steps)) <= m.firing[b, d, t]
+            sum(m.start[b, d, i] for i in window(t, boilers[b].minimum_firing_steps)) <= m.lit[b, d, t]
         ),
     )
     m.minimum_off = pyo.Constraint(
@@ -175,33 +175,32 @@ def _add_boilers(m: Any, boilers: list[PlanBoiler]) -> None:
         m.T,
         rule=lambda m, b, d, t: (
             sum(m.stop[b, d, i] for i in window(t, boilers[b].minimum_off_steps))
-            <= m.in_service[b, d] - m.firing[b, d, t]
+            <= m.in_service[b, d] - m.lit[b, d, t]
         ),
     )
 
     def ramp(m: Any, b: int, d: int, t: int) -> Any:
         boiler = boilers[b]
-        firing = [x for x in boiler.modes if x.firing]
-        low = min(x.output_t_h[0] for x in firing)
+        low = min(x.output_t_h[0] for x in boiler.modes if x.lit)
         if boiler.ramp_t_h >= boiler.rated_t_h - low:
             return pyo.Constraint.Skip
         # A burner that lights may reach its smallest firing plus one ramp; the cycling output before it
-        # is given up, so the row is written on firing output alone.
+        # is given up, so the row is written on lit output alone.
         before = (t - 1) % steps
         return (
-            _firing_output(m, boiler, b, d, t) - _firing_output(m, boiler, b, d, before)
-            <= boiler.ramp_t_h * m.firing[b, d, before] + (low + boiler.ramp_t_h) * m.start[b, d, t]
+            _lit_output(m, boiler, b, d, t) - _lit_output(m, boiler, b, d, before)
+            <= boiler.ramp_t_h * m.lit[b, d, before] + (low + boiler.ramp_t_h) * m.start[b, d, t]
         )
 
     m.ramp = pyo.Constraint(m.B, m.D, m.T, rule=ramp)
 
 
-def _firing_output(m: Any, boiler: PlanBoiler, b: int, d: int, t: int) -> Any:
+def _lit_output(m: Any, boiler: PlanBoiler, b: int, d: int, t: int) -> Any:
     return sum(
         x.output_t_h[0] * m.mode[b, k, d, t]
         + sum(m.part[b, k, i, d, t] for i in range(len(x.output_t_h) - 1))
         for k, x in enumerate(boiler.modes)
-        if x.firing
+        if x.lit
     )
 
 

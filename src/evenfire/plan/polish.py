@@ -216,14 +216,14 @@ def polished(
 def _add_ramp(
     build: _Builder, boiler: PlanBoiler, mode: IntArray, base: FloatArray, pieces: list[IntArray]
 ) -> None:
-    """Largest rise of output between two firing steps and from lighting."""
-    firing = np.array([k >= 0 and boiler.modes[k].firing for k in mode])
-    low = min(x.output_t_h[0] for x in boiler.modes if x.firing)
-    if boiler.ramp_t_h >= boiler.rated_t_h - low or not firing.any():
+    """Largest rise of output between two lit steps and from lighting."""
+    lit = np.array([k >= 0 and boiler.modes[k].lit for k in mode])
+    low = min(x.output_t_h[0] for x in boiler.modes if x.lit)
+    if boiler.ramp_t_h >= boiler.rated_t_h - low or not lit.any():
         return
-    at = np.flatnonzero(firing)
+    at = np.flatnonzero(lit)
     before = (at - 1) % len(mode)
-    follows = firing[before]
+    follows = lit[before]
     limit = np.where(follows, boiler.ramp_t_h + base[before], low + boiler.ramp_t_h) - base[at]
     terms: list[tuple[IntArray, Any]] = [(piece[at], 1.0) for piece in pieces]
     terms += [(piece[before], np.where(follows, -1.0, 0.0)) for piece in pieces]

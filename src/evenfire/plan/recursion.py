@@ -1,6 +1,6 @@
-"""Compiled recursion over stored steam and firing boilers, one cyclic day at a time.
+"""Compiled recursion over stored steam and lit boilers, one cyclic day at a time.
 
-State: the set of firing boilers (bits) and stored steam in quanta. ``lap`` carries the least cost of
+State: the set of lit boilers (bits) and stored steam in quanta. ``lap`` carries the least cost of
 every state once round the day; ``path`` does the same from one state and keeps the way. Work per step
 is sets * levels * outputs; memory is sets * levels, for ``path`` times the steps.
 """
@@ -81,16 +81,16 @@ def lap(
                     hot = before[on, s]
                     before[off, s] = min(cold, hot)
                     before[on, s] = min(hot, cold + start[b])
-        for firing in range(sets):
-            if not np.isfinite(costs[firing, 0]):
-                after[firing, :] = np.inf
+        for lit in range(sets):
+            if not np.isfinite(costs[lit, 0]):
+                after[lit, :] = np.inf
                 continue
             lowest = -min(discharge, demand[t], levels - 1)
-            highest = min(levels - 1, most[firing])
-            _move_costs(costs[firing], most[firing], demand[t], unmet, credit, lowest, highest, moves)
-            target = after[firing]
+            highest = min(levels - 1, most[lit])
+            _move_costs(costs[lit], most[lit], demand[t], unmet, credit, lowest, highest, moves)
+            target = after[lit]
             target[:] = np.inf
-            source = before[firing]
+            source = before[lit]
             for g in range(lowest, highest + 1):
                 cost = moves[g - lowest]
                 low = max(0, g)
@@ -125,7 +125,7 @@ def path(
     Returns
     -------
     tuple
-        Cost (infinite if the state cannot be reached), firing set before the day and in each step,
+        Cost (infinite if the state cannot be reached), lit set before the day and in each step,
         shape (steps + 1,), and stored steam at the start of each step and after the last [quanta],
         shape (steps + 1,).
     """
@@ -137,9 +137,9 @@ def path(
     came = np.zeros((steps, sets, levels), dtype=np.uint8)
     moves = np.empty(discharge + levels + 1)
     for t in range(steps):
-        for firing in range(sets):
+        for lit in range(sets):
             for s in range(levels):
-                came[t, firing, s] = firing
+                came[t, lit, s] = lit
         if (t - offset) % hold == 0:
             for b in range(start.size):
                 bit = 1 << b
@@ -158,16 +158,16 @@ def path(
                         if cold + start[b] < hot:
                             before[on, s] = cold + start[b]
                             came[t, on, s] = from_cold
-        for firing in range(sets):
-            target = after[firing]
+        for lit in range(sets):
+            target = after[lit]
             target[:] = np.inf
-            if not np.isfinite(costs[firing, 0]):
+            if not np.isfinite(costs[lit, 0]):
                 continue
             lowest = -min(discharge, demand[t], levels - 1)
-            highest = min(levels - 1, most[firing])
-            _move_costs(costs[firing], most[firing], demand[t], unmet, credit, lowest, highest, moves)
-            source = before[firing]
-            taken = move[t, firing]
+            highest = min(levels - 1, most[lit])
+            _move_costs(costs[lit], most[lit], demand[t], unmet, credit, lowest, highest, moves)
+            source = before[lit]
+            taken = move[t, lit]
             for g in range(lowest, highest + 1):
                 cost = moves[g - lowest]
                 for s in range(max(0, g), min(levels, levels + g)):
@@ -181,11 +181,11 @@ def path(
     best = before[last_set, last_level]
     if not np.isfinite(best):
         return best, sequence, stored
-    firing = last_set
+    lit = last_set
     stored[steps] = last_level
     for t in range(steps - 1, -1, -1):
-        sequence[t + 1] = firing
-        stored[t] = stored[t + 1] - move[t, firing, stored[t + 1]]
-        firing = came[t, firing, stored[t]]
-    sequence[0] = firing
+        sequence[t + 1] = lit
+        stored[t] = stored[t + 1] - move[t, lit, stored[t + 1]]
+        lit = came[t, lit, stored[t]]
+    sequence[0] = lit
     return best, sequence, stored

@@ -31,9 +31,10 @@ from evenfire.plan.tables import mode_costs_k_h
 
 FloatArray = NDArray[np.float64]
 
-_QUANTA_T_PER_H = (0.5, 0.125, 0.0625)
-"""Wanted quantum per hour of step for rough, usual and fine bounds [t/h]."""
-_FINEST_STAGE = len(_QUANTA_T_PER_H)
+_QUANTA_T_PER_H = (0.25, 0.125, 0.0625, 0.03125)
+"""Wanted quantum per hour of step, from rough to fine bounds [t/h]."""
+_EXPECTED_LOSS = (4e-3, 1e-3, 4e-4, 2e-4)
+"""What a bound at each quantum usually loses of the cost: decides whether to refine it or to split."""
 _NARROWEST_M3 = 0.25
 
 
@@ -209,24 +210,33 @@ class Search:
         return replace(node, bound_k=self._fixed_k(node) + self._hull_k(node))
 
     def _refined(self, node: _Node) -> list[_Node | None]:
-        """The node with a dearer bound, or its two halves; None marks a node that cannot be refined."""
-        if node.stage < _FINEST_STAGE - 1 or (
-            node.stage < _FINEST_STAGE and node.high_m3 - node.low_m3 <= _NARROWEST_M3
-        ):
-            bound, services = self._operation_k(node, node.stage)
-            better = replace(
-                node, bound_k=max(node.bound_k, self._fixed_k(node) + bound), stage=node.stage + 1
-            )
-            if better.stage >= _FINEST_STAGE - 1 and better.bound_k < self._best.cost_k:
-                self._try(better, services)
-            return [better]
-        if node.high_m3 - node.low_m3 <= _NARROWEST_M3:
+        """The node with a better bound, or its two halves; None marks one that cannot be refined."""
+        width_k = self._width_k(node)
+        narrow = node.high_m3 - node.low_m3 <= _NARROWEST_M3
+        if node.stage and not narrow and width_k > _EXPECTED_LOSS[node.stage - 1] * node.bound_k:
+            middle = (node.low_m3 + node.high_m3) / 2
+            return [
+                replace(node, high_m3=middle, stage=node.stage - 1),
+                replace(node, low_m3=middle, stage=node.stage - 1),
+            ]
+        if node.stage == len(_QUANTA_T_PER_H):
             return [None]
-        middle = (node.low_m3 + node.high_m3) / 2
-        return [
-            replace(node, high_m3=middle, stage=_FINEST_STAGE - 2),
-            replace(node, low_m3=middle, stage=_FINEST_STAGE - 2),
-        ]
+        operation_k, services = self._operation_k(node, node.stage)
+        better = replace(
+            node,
+            bound_k=max(node.bound_k, self._fixed_k(node) + operation_k),
+            stage=node.stage + 1,
+        )
+        if better.stage >= 2 and better.bound_k < self._best.cost_k:
+            self._try(better, services)
+        return [better]
+
+    def _width_k(self, node: _Node) -> float:
+        """How much dearer the largest vessel of a node is than the smallest [k]."""
+        if node.window is None:
+            return 0.0
+        curves = self._windows[node.window]
+        return curves.at(curves.fixed_cost_k, node.high_m3) - curves.at(curves.fixed_cost_k, node.low_m3)
 
     # --- bounds ---------------------------------------------------------------------------------
 

@@ -1,4 +1,4 @@
-"""Cost of one step on a grid of outputs, for every set of firing boilers.
+"""Cost of one step on a grid of outputs, for every set of lit boilers.
 
 One quantum of steam per step divides the axis. ``outward`` tables under-estimate the model (domains
 grow to the next grid point, chords are lowered by their largest error), so a recursion over them is a
@@ -24,19 +24,19 @@ _SNAP = 1e-9
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class StepCosts:
-    """Least cost of a step [k per yearly occurrence] by firing set and output in quanta."""
+    """Least cost of a step [k per yearly occurrence] by lit set and output in quanta."""
 
     quantum_t: float
     costs: FloatArray = field(repr=False)
-    """Shape (2**boilers, outputs): bit b of the first index says boiler b fires."""
+    """Shape (2**boilers, outputs): bit b of the first index says boiler b is lit."""
     most: IntArray = field(repr=False)
-    """Largest output of each firing set [quanta], shape (2**boilers,)."""
+    """Largest output of each lit set [quanta], shape (2**boilers,)."""
     start: FloatArray = field(repr=False)
     """Cost of a burner start, shape (boilers,)."""
     split: IntArray = field(repr=False)
     """Output per boiler [quanta], shape (2**boilers, outputs, boilers)."""
     mode: tuple[tuple[IntArray, IntArray], ...] = field(repr=False)
-    """Per boiler, mode index by output when not firing and when firing (-1 where impossible)."""
+    """Per boiler, mode index by output when not lit and when lit (-1 where impossible)."""
 
 
 def start_cost_k(boiler: PlanBoiler, pressure: int, rates: PlanRates) -> float:
@@ -56,7 +56,11 @@ def mode_costs_k_h(
 
 
 def _on_grid(x: FloatArray, y: FloatArray, *, outward: bool) -> tuple[int, FloatArray]:
-    """First grid point and values of a convex piecewise-linear function of quanta."""
+    """First grid point and values of a convex piecewise-linear function of quanta.
+
+    Outward, the ends grow to the next grid points along the end slopes. An end that falls outward would
+    grow below the function's least value there; its last cell takes that least value instead.
+    """
     if outward:
         first, last = floor(x[0] + _SNAP), ceil(x[-1] - _SNAP)
     else:
@@ -67,7 +71,12 @@ def _on_grid(x: FloatArray, y: FloatArray, *, outward: bool) -> tuple[int, Float
     slopes = np.diff(y) / np.diff(x)
     values = np.interp(k, x, y)
     values = np.where(k < x[0], y[0] + slopes[0] * (k - x[0]), values)
-    values = np.where(k > x[-1], y[-1] + slopes[-1] * (k - x[-1]), values)
+    beyond = k > x[-1] + _SNAP
+    if slopes[-1] >= 0:
+        values = np.where(beyond, y[-1] + slopes[-1] * (k - x[-1]), values)
+    elif beyond.any():
+        values[-1] = y[-1]
+        values[-2:-1] = np.minimum(values[-2:-1], y[-1])
     if outward:
         error: dict[int, float] = {}
         for position, (low, high) in zip(x[1:-1], pairwise(slopes), strict=True):
@@ -80,7 +89,7 @@ def _on_grid(x: FloatArray, y: FloatArray, *, outward: bool) -> tuple[int, Float
 
 def _boiler_grid(
     boiler: PlanBoiler,
-    firing: bool,
+    lit: bool,
     pressure: int,
     rates: PlanRates,
     step_h: float,
@@ -92,7 +101,7 @@ def _boiler_grid(
     best = np.full(length, np.inf)
     which = np.full(length, -1, dtype=np.int64)
     for index, mode in enumerate(boiler.modes):
-        if mode.firing is not firing:
+        if mode.lit is not lit:
             continue
         output, cost = mode_costs_k_h(boiler, mode, pressure, rates)
         first, values = _on_grid(output * step_h / quantum_t, cost * step_h, outward=outward)
@@ -144,19 +153,19 @@ def step_costs(
     """
     grids = [
         tuple(
-            _boiler_grid(boiler, firing, pressure, rates, step_h, quantum_t, outward)
-            for firing in (False, True)
+            _boiler_grid(boiler, lit, pressure, rates, step_h, quantum_t, outward)
+            for lit in (False, True)
         )
         for boiler in boilers
     ]
     sets = 1 << len(boilers)
     rows: list[FloatArray] = []
     splits: list[IntArray] = []
-    for firing_set in range(sets):
+    for lit_set in range(sets):
         total = np.zeros(1)
         shares: list[IntArray] = []
         for b, grid in enumerate(grids):
-            total, share = _combine(total, grid[(firing_set >> b) & 1][0])
+            total, share = _combine(total, grid[(lit_set >> b) & 1][0])
             shares.append(share)
         rows.append(total)
         split = np.zeros((len(total), len(boilers)), dtype=np.int64)
@@ -170,14 +179,14 @@ def step_costs(
     costs = np.full((sets, width), np.inf)
     chosen = np.zeros((sets, width, len(boilers)), dtype=np.int64)
     most = np.zeros(sets, dtype=np.int64)
-    for firing_set, (row, split) in enumerate(zip(rows, splits, strict=True)):
+    for lit_set, (row, split) in enumerate(zip(rows, splits, strict=True)):
         finite = np.flatnonzero(np.isfinite(row))
         if not len(finite):
             continue
-        most[firing_set] = finite[-1]
+        most[lit_set] = finite[-1]
         cost, source = _monotone(row[: finite[-1] + 1], rates.unmet_k_t * quantum_t)
-        costs[firing_set, : len(cost)] = cost
-        chosen[firing_set, : len(cost)] = split[source]
+        costs[lit_set, : len(cost)] = cost
+        chosen[lit_set, : len(cost)] = split[source]
     return StepCosts(
         quantum_t=quantum_t,
         costs=costs,

@@ -58,12 +58,12 @@ def extract(model: pyo.ConcreteModel, inputs: PlanInputs) -> Plan:
 
 
 def burner_starts(boilers: Sequence[PlanBoiler], mode: NDArray[np.int64]) -> NDArray[np.bool_]:
-    """Starts from not firing to firing, cyclic over the day, shape (boilers, steps)."""
-    firing = np.zeros(mode.shape, dtype=bool)
+    """Starts from not lit to lit, cyclic over the day, shape (boilers, steps)."""
+    lit = np.zeros(mode.shape, dtype=bool)
     for row, boiler in enumerate(boilers):
-        fires = [k for k, x in enumerate(boiler.modes) if x.firing]
-        firing[row] = np.isin(mode[row], fires)
-    return firing & ~np.roll(firing, 1, axis=1)
+        fires = [k for k, x in enumerate(boiler.modes) if x.lit]
+        lit[row] = np.isin(mode[row], fires)
+    return lit & ~np.roll(lit, 1, axis=1)
 
 
 def assign(model: pyo.ConcreteModel, inputs: PlanInputs, plan: Plan) -> None:
@@ -83,11 +83,11 @@ def assign(model: pyo.ConcreteModel, inputs: PlanInputs, plan: Plan) -> None:
         for b, row in rows.items():
             m.in_service[b, d].set_value(int(day.in_service[row]))
             modes = inputs.boiler(names[b]).modes
-            firing = np.array([k >= 0 and modes[k].firing for k in day.mode[row]])
-            before = np.roll(firing, 1)
+            lit = np.array([k >= 0 and modes[k].lit for k in day.mode[row]])
+            before = np.roll(lit, 1)
             for t in range(steps):
-                m.start[b, d, t].set_value(int(firing[t] and not before[t]))
-                m.stop[b, d, t].set_value(int(before[t] and not firing[t]))
+                m.start[b, d, t].set_value(int(lit[t] and not before[t]))
+                m.stop[b, d, t].set_value(int(before[t] and not lit[t]))
                 k = int(day.mode[row, t])
                 if k < 0:
                     continue
