@@ -10,7 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from evenfire.plan.inputs import PlanBoiler, PlanRates
-from evenfire.plan.recursion import lap, path
+from evenfire.plan.recursion import joint_states, lap, path
 from evenfire.plan.tables import StepCosts, step_costs
 
 FloatArray = NDArray[np.float64]
@@ -51,10 +51,16 @@ class DayProblem:
     rates: PlanRates
     store: Store
     quantum_t: float
+    most_states: int
+    """Burner states told apart; fewer than the minimum times ask for still give a valid bound."""
 
     @cached_property
     def _outward(self) -> StepCosts:
         return self._tables(outward=True)
+
+    @cached_property
+    def _inward(self) -> StepCosts:
+        return self._tables(outward=False)
 
     def _tables(self, *, outward: bool) -> StepCosts:
         return step_costs(
@@ -83,10 +89,25 @@ class DayProblem:
         # demand can shift in it is granted in advance.
         loss = len(demand) * self.store.loss_t_h * self.step_h / self.quantum_t
         granted = abs(credit) * float(np.abs(exact - demand).sum()) + max(0.0, credit) * loss
-        value = np.zeros((len(tables.most), levels))
+        off_ages, lit_ages = self._ages()
+        strides, lit_set = joint_states(off_ages, lit_ages)
+        value = np.zeros((len(lit_set), levels))
         best = -np.inf
         for _ in range(_MOST_LAPS):
-            after = lap(value, demand, tables.costs, tables.most, tables.start, unmet, credit, discharge)
+            after = lap(
+                value,
+                demand,
+                tables.costs,
+                tables.most,
+                tables.start,
+                off_ages,
+                lit_ages,
+                strides,
+                lit_set,
+                unmet,
+                credit,
+                discharge,
+            )
             reached = np.isfinite(after)
             bound = float((after[reached] - value[reached]).min())
             done = bound <= best + _LAP_PROGRESS * abs(bound)
@@ -95,6 +116,31 @@ class DayProblem:
                 break
             value = np.where(reached, after, after[reached].max()) - after[reached].min()
         return best - granted
+
+    def _ages(self) -> tuple[IntArray, IntArray]:
+        """Ages of burner states told apart, as many as ``most_states`` allows, the shortest first."""
+        off_ages = np.ones(len(self.boilers), dtype=np.int64)
+        lit_ages = np.ones(len(self.boilers), dtype=np.int64)
+        wanted = [
+            (ages, b, minimum)
+            for b, boiler in enumerate(self.boilers)
+            for ages, minimum in (
+                (lit_ages, boiler.minimum_firing_steps),
+                (off_ages, boiler.minimum_off_steps),
+            )
+        ]
+        for age in range(2, max((minimum for _, _, minimum in wanted), default=1) + 1):
+            for ages, b, minimum in wanted:
+                ages[b] = min(age, minimum)
+                if np.prod(off_ages + lit_ages) > self.most_states:
+                    ages[b] = min(age - 1, minimum)
+        return off_ages, lit_ages
+
+    def _minimum_times_kept(self, off_ages: IntArray, lit_ages: IntArray) -> bool:
+        return all(
+            off_ages[b] == boiler.minimum_off_steps and lit_ages[b] == boiler.minimum_firing_steps
+            for b, boiler in enumerate(self.boilers)
+        )
 
     def _levels(self, *, outward: bool) -> int:
         count = self.store.capacity_t / self.quantum_t
@@ -106,22 +152,45 @@ class DayProblem:
             return ceil(fall * self.step_h / self.quantum_t - _SNAP) + 1
         return floor(self.store.release_t_h * self.step_h / self.quantum_t + _SNAP)
 
-    def schedule(self, hold: int, offset: int) -> DaySchedule | None:
-        """A good day on the grid whose burners change only every ``hold`` steps.
+    def schedule(self) -> DaySchedule | None:
+        """A good day on the grid that keeps minimum times.
 
         Returns
         -------
         DaySchedule or None
             None where the grid has no cyclic day (the plan then looks elsewhere).
         """
+        off_ages, lit_ages = self._ages()
+        hold = 1
+        if not self._minimum_times_kept(off_ages, lit_ages):
+            hold = max(max(x.minimum_firing_steps, x.minimum_off_steps) for x in self.boilers)
+            off_ages, lit_ages = np.ones_like(off_ages), np.ones_like(lit_ages)
+        found = [self._schedule(off_ages, lit_ages, hold, offset) for offset in range(hold)]
+        kept = [schedule for schedule in found if schedule is not None]
+        return min(kept, key=lambda x: x.cost_k) if kept else None
+
+    def _schedule(self, off_ages: IntArray, lit_ages: IntArray, hold: int, offset: int) -> DaySchedule | None:
+        """One day whose burners change every ``hold`` steps at most."""
         demand, _ = self._whole_quanta()
-        tables = self._tables(outward=False)
+        if len(demand) % hold:
+            return None
+        tables = self._inward
         levels = self._levels(outward=False)
-        discharge = self._discharge(outward=False)
-        unmet = self.rates.unmet_k_t * self.quantum_t
-        credit = self.store.credit_k_t * self.quantum_t
-        arguments = (demand, tables.costs, tables.most, tables.start, unmet, credit, discharge)
-        value = np.zeros((len(tables.most), levels))
+        strides, lit_set = joint_states(off_ages, lit_ages)
+        arguments = (
+            demand,
+            tables.costs,
+            tables.most,
+            tables.start,
+            off_ages,
+            lit_ages,
+            strides,
+            lit_set,
+            self.rates.unmet_k_t * self.quantum_t,
+            self.store.credit_k_t * self.quantum_t,
+            self._discharge(outward=False),
+        )
+        value = np.zeros((len(lit_set), levels))
         for _ in range(_SETTLING_LAPS):
             after = lap(value, *arguments)
             reached = np.isfinite(after)
@@ -131,14 +200,14 @@ class DayProblem:
         # Two days back from the cheapest state lies a state of the cycle that the days settle into.
         state = np.unravel_index(int(np.argmin(value)), value.shape)
         for _ in range(2):
-            _, lit, stored = path(value, int(state[0]), int(state[1]), *arguments, hold, offset)
-            state = (lit[0], stored[0])
+            _, burners, stored = path(value, int(state[0]), int(state[1]), *arguments, hold, offset)
+            state = (burners[0], stored[0])
         value = np.full_like(value, np.inf)
         value[state] = 0.0
-        cost, lit, stored = path(value, int(state[0]), int(state[1]), *arguments, hold, offset)
+        cost, burners, stored = path(value, int(state[0]), int(state[1]), *arguments, hold, offset)
         if not np.isfinite(cost):
             return None
-        lit = lit[1:]
+        lit = lit_set[burners[1:]]
         steps = len(demand)
         mode = np.zeros((len(self.boilers), steps), dtype=np.int64)
         for t in range(steps):

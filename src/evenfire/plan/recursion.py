@@ -1,8 +1,10 @@
-"""Compiled recursion over stored steam and lit boilers, one cyclic day at a time.
+"""Compiled recursion over stored steam and burner states, one cyclic day at a time.
 
-State: the set of lit boilers (bits) and stored steam in quanta. ``lap`` carries the least cost of
-every state once round the day; ``path`` does the same from one state and keeps the way. Work per step
-is sets * levels * outputs; memory is sets * levels, for ``path`` times the steps.
+A boiler's burner state is its age: off for 1, 2, ... steps (the last meaning "or longer"), then lit for
+1, 2, ... steps likewise, so that minimum times are states. The joint state is a mixed-radix number
+over the boilers; the other coordinate is stored steam in quanta. ``lap`` carries the least cost of
+every state once round the day; ``path`` also keeps the way. Work per step is states * levels * outputs;
+memory is states * levels, for ``path`` times the steps.
 """
 
 from __future__ import annotations
@@ -13,6 +15,99 @@ from numpy.typing import NDArray
 
 FloatArray = NDArray[np.float64]
 IntArray = NDArray[np.int64]
+
+
+def joint_states(off_ages: IntArray, lit_ages: IntArray) -> tuple[IntArray, IntArray]:
+    """Stride of each boiler in the joint state, and the lit set (bits) of each joint state.
+
+    Parameters
+    ----------
+    off_ages, lit_ages : integer arrays of shape (boilers,)
+        Ages told apart when off and when lit, at least 1.
+    """
+    sizes = off_ages + lit_ages
+    strides = np.concatenate([[1], np.cumprod(sizes)])
+    state = np.arange(strides[-1])
+    lit = np.zeros_like(state)
+    for b in range(len(sizes)):
+        age = state // strides[b] % sizes[b]
+        lit |= (age >= off_ages[b]).astype(np.int64) << b
+    return strides[:-1].astype(np.int64), lit
+
+
+@njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
+def _switch(
+    before: FloatArray,
+    after: FloatArray,
+    stride: int,
+    off: int,
+    lit: int,
+    start: float,
+) -> None:
+    """One boiler ages by a step, lights or goes out where its age allows."""
+    states, levels = before.shape
+    size = off + lit
+    for state in range(states):
+        age = state // stride % size
+        base = state - age * stride
+        if age < off:
+            younger = base + (age - 1) * stride
+            if age == 0:
+                source = before[base + (size - 1) * stride]
+                for s in range(levels):
+                    after[state, s] = source[s]
+            else:
+                for s in range(levels):
+                    after[state, s] = before[younger, s]
+            if age == off - 1:
+                for s in range(levels):
+                    after[state, s] = min(after[state, s], before[state, s])
+        else:
+            if age == off:
+                source = before[base + (off - 1) * stride]
+                for s in range(levels):
+                    after[state, s] = source[s] + start
+            else:
+                younger = base + (age - 1) * stride
+                for s in range(levels):
+                    after[state, s] = before[younger, s]
+            if age == size - 1:
+                for s in range(levels):
+                    after[state, s] = min(after[state, s], before[state, s])
+
+
+@njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
+def _switch_tracked(
+    before: FloatArray,
+    after: FloatArray,
+    came: NDArray[np.int32],
+    kept: NDArray[np.int32],
+    stride: int,
+    off: int,
+    lit: int,
+    start: float,
+) -> None:
+    """``_switch`` that also carries which state each state came from."""
+    states, levels = before.shape
+    size = off + lit
+    for state in range(states):
+        age = state // stride % size
+        base = state - age * stride
+        if age == 0:
+            source, extra = base + (size - 1) * stride, 0.0
+        elif age == off:
+            source, extra = base + (off - 1) * stride, start
+        else:
+            source, extra = base + (age - 1) * stride, 0.0
+        stays = age in (off - 1, size - 1)
+        for s in range(levels):
+            cost = before[source, s] + extra
+            origin = came[source, s]
+            if stays and before[state, s] <= cost:
+                cost = before[state, s]
+                origin = came[state, s]
+            after[state, s] = cost
+            kept[state, s] = origin
 
 
 @njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
@@ -42,6 +137,10 @@ def lap(
     costs: FloatArray,
     most: IntArray,
     start: FloatArray,
+    off_ages: IntArray,
+    lit_ages: IntArray,
+    strides: IntArray,
+    lit_set: IntArray,
     unmet: float,
     credit: float,
     discharge: int,
@@ -50,12 +149,14 @@ def lap(
 
     Parameters
     ----------
-    value : array of shape (sets, levels)
+    value : array of shape (states, levels)
         Cost already paid in each state.
     demand : integer array of shape (steps,)
         Demand and standing loss per step [quanta].
     costs, most, start : arrays
         As in ``StepCosts``.
+    off_ages, lit_ages, strides, lit_set : integer arrays
+        As in ``joint_states``.
     unmet, credit : float
         Cost per quantum not met; saving per quantum charged.
     discharge : int
@@ -63,41 +164,30 @@ def lap(
 
     Returns
     -------
-    array of shape (sets, levels)
+    array of shape (states, levels)
     """
-    sets, levels = value.shape
+    states, levels = value.shape
     before = value.copy()
     after = np.empty_like(value)
     moves = np.empty(discharge + levels + 1)
     for t in range(demand.size):
         for b in range(start.size):
-            bit = 1 << b
-            for off in range(sets):
-                if off & bit:
-                    continue
-                on = off | bit
-                for s in range(levels):
-                    cold = before[off, s]
-                    hot = before[on, s]
-                    before[off, s] = min(cold, hot)
-                    before[on, s] = min(hot, cold + start[b])
-        for lit in range(sets):
+            _switch(before, after, strides[b], off_ages[b], lit_ages[b], start[b])
+            before, after = after, before
+        for state in range(states):
+            lit = lit_set[state]
+            target = after[state]
+            target[:] = np.inf
             if not np.isfinite(costs[lit, 0]):
-                after[lit, :] = np.inf
                 continue
             lowest = -min(discharge, demand[t], levels - 1)
             highest = min(levels - 1, most[lit])
             _move_costs(costs[lit], most[lit], demand[t], unmet, credit, lowest, highest, moves)
-            target = after[lit]
-            target[:] = np.inf
-            source = before[lit]
+            source = before[state]
             for g in range(lowest, highest + 1):
                 cost = moves[g - lowest]
-                low = max(0, g)
-                high = min(levels, levels + g)
-                for s in range(low, high):
-                    candidate = source[s - g] + cost
-                    target[s] = min(target[s], candidate)
+                for s in range(max(0, g), min(levels, levels + g)):
+                    target[s] = min(target[s], source[s - g] + cost)
         before, after = after, before
     return before
 
@@ -105,12 +195,16 @@ def lap(
 @njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
 def path(
     value: FloatArray,
-    last_set: int,
+    last_state: int,
     last_level: int,
     demand: IntArray,
     costs: FloatArray,
     most: IntArray,
     start: FloatArray,
+    off_ages: IntArray,
+    lit_ages: IntArray,
+    strides: IntArray,
+    lit_set: IntArray,
     unmet: float,
     credit: float,
     discharge: int,
@@ -120,54 +214,46 @@ def path(
     """The cheapest day that ends in one state, from costs ``value`` already paid before it.
 
     ``hold`` > 1 lets burners change only at steps t with (t - offset) % hold == 0, which keeps
-    minimum times of up to ``hold`` steps (the day's length must be a multiple of ``hold``).
+    minimum times of up to ``hold`` steps without ages (the day's length must be a multiple of it).
 
     Returns
     -------
     tuple
-        Cost (infinite if the state cannot be reached), lit set before the day and in each step,
+        Cost (infinite if the state cannot be reached), joint state before the day and in each step,
         shape (steps + 1,), and stored steam at the start of each step and after the last [quanta],
         shape (steps + 1,).
     """
-    sets, levels = value.shape
+    states, levels = value.shape
     steps = demand.size
     before = value.copy()
     after = np.empty_like(before)
-    move = np.zeros((steps, sets, levels), dtype=np.int16)
-    came = np.zeros((steps, sets, levels), dtype=np.uint8)
+    move = np.zeros((steps, states, levels), dtype=np.int16)
+    origin = np.zeros((steps, states, levels), dtype=np.int16)
+    came = np.empty((states, levels), dtype=np.int32)
+    kept = np.empty((states, levels), dtype=np.int32)
     moves = np.empty(discharge + levels + 1)
     for t in range(steps):
-        for lit in range(sets):
+        for state in range(states):
             for s in range(levels):
-                came[t, lit, s] = lit
+                came[state, s] = state
         if (t - offset) % hold == 0:
             for b in range(start.size):
-                bit = 1 << b
-                for off in range(sets):
-                    if off & bit:
-                        continue
-                    on = off | bit
-                    for s in range(levels):
-                        cold = before[off, s]
-                        hot = before[on, s]
-                        from_cold = came[t, off, s]
-                        from_hot = came[t, on, s]
-                        if hot < cold:
-                            before[off, s] = hot
-                            came[t, off, s] = from_hot
-                        if cold + start[b] < hot:
-                            before[on, s] = cold + start[b]
-                            came[t, on, s] = from_cold
-        for lit in range(sets):
-            target = after[lit]
+                _switch_tracked(before, after, came, kept, strides[b], off_ages[b], lit_ages[b], start[b])
+                before, after = after, before
+                came, kept = kept, came
+        for state in range(states):
+            lit = lit_set[state]
+            target = after[state]
             target[:] = np.inf
+            for s in range(levels):
+                origin[t, state, s] = came[state, s]
             if not np.isfinite(costs[lit, 0]):
                 continue
             lowest = -min(discharge, demand[t], levels - 1)
             highest = min(levels - 1, most[lit])
             _move_costs(costs[lit], most[lit], demand[t], unmet, credit, lowest, highest, moves)
-            source = before[lit]
-            taken = move[t, lit]
+            source = before[state]
+            taken = move[t, state]
             for g in range(lowest, highest + 1):
                 cost = moves[g - lowest]
                 for s in range(max(0, g), min(levels, levels + g)):
@@ -178,14 +264,14 @@ def path(
         before, after = after, before
     sequence = np.zeros(steps + 1, dtype=np.int64)
     stored = np.zeros(steps + 1, dtype=np.int64)
-    best = before[last_set, last_level]
+    best = before[last_state, last_level]
     if not np.isfinite(best):
         return best, sequence, stored
-    lit = last_set
+    state = last_state
     stored[steps] = last_level
     for t in range(steps - 1, -1, -1):
-        sequence[t + 1] = lit
-        stored[t] = stored[t + 1] - move[t, lit, stored[t + 1]]
-        lit = came[t, lit, stored[t]]
-    sequence[0] = lit
+        sequence[t + 1] = state
+        stored[t] = stored[t + 1] - move[t, state, stored[t + 1]]
+        state = origin[t, state, stored[t]]
+    sequence[0] = state
     return best, sequence, stored

@@ -36,6 +36,8 @@ _QUANTA_T_PER_H = (0.25, 0.125, 0.0625, 0.03125)
 _EXPECTED_LOSS = (4e-3, 1e-3, 4e-4, 2e-4)
 """What a bound at each quantum usually loses of the cost: decides whether to refine it or to split."""
 _NARROWEST_M3 = 0.25
+_MOST_STATES = (1, 64, 64, 64)
+"""Joint burner states told apart at each quantum; 1 leaves minimum times out of the bound."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -294,6 +296,7 @@ class Search:
             rates=inputs.rates,
             store=store,
             quantum_t=quantum_t(boilers, inputs.step_h, wanted),
+            most_states=_MOST_STATES[stage],
         )
 
     def _day_bound(self, node: _Node, day: int, service: tuple[str, ...], store: Store, stage: int) -> float:
@@ -428,16 +431,12 @@ class Search:
             return
         self._best.tried.add(key)
         boilers = tuple(inputs.boiler(name) for name in node.boilers)
-        hold = max(max(x.minimum_firing_steps, x.minimum_off_steps) for x in boilers) if boilers else 1
         store = self._store(node, at_m3=volume)
         days = []
         for day, service in enumerate(services):
-            problem = self._problem(node, day, service, store, 1)
-            found = [problem.schedule(hold, offset) for offset in range(hold)]
-            kept = [schedule for schedule in found if schedule is not None]
-            if not kept:
+            schedule = self._problem(node, day, service, store, 1).schedule()
+            if schedule is None:
                 return
-            schedule = min(kept, key=lambda x: x.cost_k)
             mode = np.full((len(boilers), len(inputs.days[day].demand_t_h)), -1, dtype=np.int64)
             for row, boiler in enumerate(boilers):
                 if boiler.name in service:

@@ -152,10 +152,7 @@ def step_costs(
         True for lower bounds, False for schedules.
     """
     grids = [
-        tuple(
-            _boiler_grid(boiler, lit, pressure, rates, step_h, quantum_t, outward)
-            for lit in (False, True)
-        )
+        tuple(_boiler_grid(boiler, lit, pressure, rates, step_h, quantum_t, outward) for lit in (False, True))
         for boiler in boilers
     ]
     sets = 1 << len(boilers)
