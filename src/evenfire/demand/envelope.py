@@ -10,6 +10,9 @@ from evenfire.demand.series import FloatArray
 
 IndexArray = NDArray[np.int64]
 
+LEAF = 16
+"""Steps whose intervals are tried one by one before halves are joined."""
+
 
 @njit(cache=True)  # type: ignore[untyped-decorator]  # numba has no types
 def _upper_hull(points: IndexArray, count: int, cumulated: FloatArray, lowest: float) -> int:
@@ -114,6 +117,19 @@ def _added(
 
 
 @njit(cache=True)  # type: ignore[untyped-decorator]  # numba has no types
+def _cut(first: IndexArray, after: IndexArray, kept: int, cumulated: FloatArray, lowest: float) -> int:
+    """Number of intervals left of a hull when it ends where its slope falls to ``lowest``."""
+    while kept > 1:
+        length = (after[kept - 1] - first[kept - 1]) - (after[kept - 2] - first[kept - 2])
+        steam = cumulated[after[kept - 1]] - cumulated[first[kept - 1]]
+        steam -= cumulated[after[kept - 2]] - cumulated[first[kept - 2]]
+        if steam > lowest * length:
+            break
+        kept -= 1
+    return kept
+
+
+@njit(cache=True)  # type: ignore[untyped-decorator]  # numba has no types
 def _merged(
     firsts: tuple[IndexArray, IndexArray, IndexArray],
     afters: tuple[IndexArray, IndexArray, IndexArray],
@@ -146,14 +162,24 @@ def _merged(
         else:
             kept = _added(first, after, kept, firsts[2][at[2]], afters[2][at[2]], cumulated)
         at[source] += 1
-    while kept > 1:
-        length = (after[kept - 1] - first[kept - 1]) - (after[kept - 2] - first[kept - 2])
-        steam = cumulated[after[kept - 1]] - cumulated[first[kept - 1]]
-        steam -= cumulated[after[kept - 2]] - cumulated[first[kept - 2]]
-        if steam > lowest * length:
-            break
-        kept -= 1
-    return kept
+    left: int = _cut(first, after, kept, cumulated, lowest)
+    return left
+
+
+@njit(cache=True)  # type: ignore[untyped-decorator]  # numba has no types
+def _leaf(
+    start: int, end: int, cumulated: FloatArray, lowest: float, first: IndexArray, after: IndexArray
+) -> int:
+    """Hull of the intervals inside a few steps, by trying all of each length; its count."""
+    kept = 0
+    for length in range(end - start):
+        best = start
+        for at in range(start + 1, end - length):
+            if cumulated[at + length] - cumulated[at] > cumulated[best + length] - cumulated[best]:
+                best = at
+        kept = _added(first, after, kept, best, best + length, cumulated)
+    left: int = _cut(first, after, kept, cumulated, lowest)
+    return left
 
 
 @njit(cache=True)  # type: ignore[untyped-decorator]  # numba has no types
@@ -180,17 +206,17 @@ def largest_draws(cumulated: FloatArray, lowest: float) -> tuple[IndexArray, Ind
     draws_from = np.zeros(65, dtype=np.int64)
     counts = np.zeros(3, dtype=np.int64)
     nodes = 0
-    for point in range(points):
-        upper[upper_from[nodes]] = point
-        lower[lower_from[nodes]] = point
-        first[draws_from[nodes]] = point
-        after[draws_from[nodes]] = point
+    for start in range(0, points, LEAF):
+        end = min(start + LEAF, points)
+        u, p, d = upper_from[nodes], lower_from[nodes], draws_from[nodes]
+        for at in range(end - start):
+            upper[u + at] = lower[p + at] = start + at
         nodes += 1
-        node_points[nodes - 1] = 1
-        upper_from[nodes] = upper_from[nodes - 1] + 1
-        lower_from[nodes] = lower_from[nodes - 1] + 1
-        draws_from[nodes] = draws_from[nodes - 1] + 1
-        while nodes > 1 and (node_points[nodes - 2] == node_points[nodes - 1] or point == points - 1):
+        node_points[nodes - 1] = end - start
+        upper_from[nodes] = u + _upper_hull(upper[u:], end - start, cumulated, lowest)
+        lower_from[nodes] = p + _lower_hull(lower[p:], end - start, cumulated, lowest)
+        draws_from[nodes] = d + _leaf(start, end, cumulated, lowest, first[d:], after[d:])
+        while nodes > 1 and (node_points[nodes - 2] == node_points[nodes - 1] or end == points):
             a, b = nodes - 2, nodes - 1
             u, v, w = upper_from[a], upper_from[b], upper_from[nodes]
             p, q, r = lower_from[a], lower_from[b], lower_from[nodes]

@@ -9,8 +9,6 @@ import numpy as np
 from evenfire.demand.series import FloatArray
 from evenfire.errors import Notice, Problem, RecordError
 
-GAP_RULES = ("refuse", "hold", "interpolate", "zero")
-
 
 def gaps_filled(
     flow: FloatArray, start: dt.datetime, step_s: float, rule: str, largest_gap_s: float, source: str
