@@ -152,18 +152,18 @@ REFUSALS = [
     pytest.param(
         ("load_percent = 50, efficiency_percent = 91.0", "load_percent = 80, efficiency_percent = 91.0"),
         "case.toml: boiler 'Boiler 1, 5 t/h', efficiency_points: load_percent runs 25, 80, 75, 100; must rise from"
-        " point to point [C115]",
+        " row to row [C115]",
         id="loads out of order",
     ),
     pytest.param(
         ("load_percent = 25, efficiency_percent = 89.0", "load_percent = 30, efficiency_percent = 89.0"),
-        "case.toml: boiler 'Boiler 1, 5 t/h', efficiency_points: the first point is at 30 % load; must start at or"
+        "case.toml: boiler 'Boiler 1, 5 t/h', efficiency_points: the first row is at 30 % load; must start at or"
         " below the smallest firing load, 25 % with turndown_ratio 4 [C116]",
         id="points that do not reach down",
     ),
     pytest.param(
         ("load_percent = 100, efficiency_percent = 90.6", "load_percent = 95, efficiency_percent = 90.6"),
-        "case.toml: boiler 'Boiler 1, 5 t/h', efficiency_points: the last point is at 95 % load; must reach 100 %"
+        "case.toml: boiler 'Boiler 1, 5 t/h', efficiency_points: the last row is at 95 % load; must reach 100 %"
         " [C116]",
         id="points that do not reach up",
     ),
@@ -322,8 +322,96 @@ def test_values_that_leave_a_formula_are_told_with_the_boiler(write_example, pro
             ),
         )
     )
-    assert line.startswith("boiler 'Boiler 1', ")
+    assert line.startswith("case.toml: boiler 'Boiler 1', ")
     assert line.endswith("[C129]")
+
+
+STACK = """\
+stack_readings = [
+  { load_percent = 25, stack_temperature_degc = 190, o2_percent = 5.0 },
+  { load_percent = 100, stack_temperature_degc = 230, o2_percent = 3.0 },
+]"""
+POINTS = EXAMPLE[EXAMPLE.index("efficiency_points") : EXAMPLE.index("maintenance_per_year = 9000")].strip()
+
+STACK_REFUSALS = [
+    pytest.param(
+        (POINTS, ""),
+        "efficiency_points: missing; state efficiency_points, or stack_readings to reckon them from [C131]",
+        id="no efficiency at all",
+    ),
+    pytest.param(
+        (POINTS, POINTS + "\ncasing_loss_kw = 20.0"),
+        "casing_loss_kw: stated without stack_readings; state stack_readings, which it belongs to, or leave it out"
+        " [C131]",
+        id="casing loss without readings",
+    ),
+    pytest.param(
+        (POINTS, STACK.replace(", o2_percent = 5.0", "")),
+        "stack_readings[0]: neither oxygen nor carbon dioxide; state o2_percent or co2_percent [C132]",
+        id="no gas",
+    ),
+    pytest.param(
+        (POINTS, STACK.replace("o2_percent = 5.0", "o2_percent = 5.0, co2_percent = 9.0")),
+        "stack_readings[0]: both gases; state o2_percent or co2_percent [C132]",
+        id="two gases",
+    ),
+    pytest.param(
+        (POINTS, STACK.replace("= 190", "= 12")),
+        "stack_readings[0].stack_temperature_degc: found 12 degC; must not be colder than the combustion air, 20"
+        " degC [C134]",
+        id="stack colder than air",
+    ),
+    pytest.param(
+        (POINTS, STACK.replace("= 190", "= 99") + "\neconomiser = { effectiveness_percent = 50 }"),
+        "stack_readings[0].stack_temperature_degc: found 99 degC; must not be colder than the water into the"
+        " economiser, 103 degC [C134]",
+        id="stack colder than economiser water",
+    ),
+    pytest.param(
+        (POINTS, f"{POINTS}\n{STACK}\neconomiser = {{ effectiveness_percent = 50 }}"),
+        "economiser: efficiency_points are stated too; leave out the points, so that they follow from the readings"
+        " behind the economiser, or leave out the economiser that they already hold [C135]",
+        id="economiser counted twice",
+    ),
+    pytest.param(
+        (POINTS, STACK.replace("load_percent = 25", "load_percent = 40")),
+        "stack_readings: the first row is at 40 % load; must start at or below the smallest firing load, 25 % with"
+        " turndown_ratio 4 [C116]",
+        id="readings that do not reach down",
+    ),
+    pytest.param(
+        (POINTS, f"{POINTS.replace('= 90.0', '= 92.0')}\n{STACK}"),
+        "efficiency at 100% load: found 0.92 on net calorific value; must not exceed 0.9041, what the stack loss"
+        " leaves at that load [C129]",
+        id="efficiency above what the stack leaves",
+    ),
+    pytest.param(
+        (POINTS, STACK.replace("o2_percent = 5.0", "co2_percent = 15.0")),
+        "carbon dioxide in dry flue gas: found 15 %; must lie between 1.68182 and 11.7727 % [C129]",
+        id="more carbon dioxide than gas can give",
+    ),
+]
+
+
+@pytest.mark.parametrize(("replacement", "expected"), STACK_REFUSALS)
+def test_one_slip_at_the_stack_gives_its_one_message(write_example, problems_of, replacement, expected):
+    """Each slip in stack readings is refused with exactly one problem that names the boiler."""
+    assert problems_of(write_example(replacement)) == (f"case.toml: boiler 'Boiler 1', {expected}",)
+
+
+def test_electric_boiler_with_stack_readings_is_refused(write_example, problems_of):
+    """Electricity leaves no flue gas to read."""
+    (line,) = problems_of(write_example((POINTS, STACK), ('kind = "natural_gas"', 'kind = "electricity"')))
+    assert line == (
+        "case.toml: boiler 'Boiler 1', stack_readings: an electric boiler has no stack; state efficiency_points"
+        " instead [C133]"
+    )
+
+
+def test_existing_boiler_named_like_one_of_the_catalogue_is_refused(write_case, problems_of):
+    """Every boiler of a case, in place or on offer, has its own name."""
+    (line,) = problems_of(write_case(("Boiler 2, 2.5 t/h", "New boiler, 3 t/h")))
+    assert line.endswith("give the boiler in place another name [C112]")
 
 
 def test_text_that_is_not_utf_8_names_the_line(write_example, problems_of):

@@ -3,10 +3,40 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator
+from dataclasses import dataclass, field
 
 from evenfire.case.messages import with_unit
 from evenfire.case.schema_section import Section, unit_of
 from evenfire.errors import Notice
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Assumed:
+    """A value that a case did not state, in the unit of its key."""
+
+    key: str
+    value: float
+    unit: str
+    reason: str
+
+    @property
+    def shown(self) -> str:
+        """The value with its unit, to four digits."""
+        return f"{self.value:.4g} {self.unit}"
+
+
+@dataclass(slots=True)
+class AssumedValues:
+    """Gathers what is assumed while one boiler is converted."""
+
+    values: list[Assumed] = field(default_factory=list)
+
+    def stated_or(self, key: str, stated: float | None, otherwise: float, unit: str, reason: str) -> float:
+        """The stated value, or the other one, which is then noted as assumed for this reason."""
+        if stated is not None:
+            return stated
+        self.values.append(Assumed(key=key, value=otherwise, unit=unit, reason=reason))
+        return otherwise
 
 
 def assumption(place: str, key: str, value: str, reason: str) -> Notice:
@@ -31,7 +61,7 @@ def default_notices(sections: Iterable[tuple[str, Section]]) -> Iterator[Notice]
         How the section is called in the notice, and the section.
     """
     for place, section in sections:
-        for key, field in type(section).model_fields.items():
+        for key, described in type(section).model_fields.items():
             value = getattr(section, key)
             if key not in section.model_fields_set and isinstance(value, int | float):
-                yield assumption(place, key, with_unit(float(f"{value:.6g}"), unit_of(field)), "default")
+                yield assumption(place, key, with_unit(float(value), unit_of(described)), "default")

@@ -4,30 +4,12 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Collection, Iterator
-from itertools import pairwise
 
-from evenfire.boiler import fuel_spec
-from evenfire.case.draft import Draft, boiler_place
-from evenfire.case.schema_boiler import BoilerType
+from evenfire.case.checks_boiler import boiler_problems, catalogue_problems
+from evenfire.case.checks_steam import boiling_problems, steam_problems
+from evenfire.case.draft import Draft
 from evenfire.case.schema_money import AlternativeName
-from evenfire.case.schema_site import Fuel, Steam
 from evenfire.errors import Problem
-from evenfire.units import bar_g_to_pa, k_to_degc
-from evenfire.water import saturation_temperature_k
-
-LOAD_ROUNDING_PERCENT = 0.05
-"""How far a typed load may lie above the smallest firing load, as 100 / 3 is typed 33.33 or 33.34."""
-
-
-def lhv_to_hhv(fuel: Fuel) -> float:
-    """Net over gross calorific value of the case's fuel, stated or published [1]."""
-    return fuel.lhv_to_hhv if fuel.lhv_to_hhv is not None else fuel_spec(fuel.kind).lhv_to_hhv
-
-
-def net_efficiency(efficiency_percent: float, basis: str, fuel: Fuel) -> float:
-    """Efficiency on net calorific value [1] from a typed one [%] on its basis."""
-    efficiency = efficiency_percent / 100.0
-    return efficiency / lhv_to_hhv(fuel) if basis == "hhv" else efficiency
 
 
 def draft_problems(draft: Draft) -> list[Problem]:
@@ -36,9 +18,9 @@ def draft_problems(draft: Draft) -> list[Problem]:
         problem
         for check in (
             _record_problems,
-            _steam_problems,
-            _boiler_problems,
-            _catalogue_problems,
+            steam_problems,
+            boiler_problems,
+            catalogue_problems,
             _fuel_problems,
             _vessel_problems,
             _window_problems,
@@ -68,134 +50,6 @@ def _record_problems(draft: Draft) -> Iterator[Problem]:
         )
 
 
-def _steam_problems(draft: Draft) -> Iterator[Problem]:
-    steam = draft.steam
-    if steam is None:
-        return
-    if steam.boiler_pressure_bar_g <= steam.process_pressure_bar_g:
-        yield Problem(
-            code="C110",
-            where=f"{draft.file}: steam.boiler_pressure_bar_g",
-            found=f"found {steam.boiler_pressure_bar_g:g} bar g",
-            allowed=f"must be above steam.process_pressure_bar_g, {steam.process_pressure_bar_g:g} bar g",
-        )
-    yield from _too_hot(
-        steam.feedwater_temperature_degc,
-        f"{draft.file}: steam.feedwater_temperature_degc",
-        steam.boiler_pressure_bar_g,
-        "steam.boiler_pressure_bar_g",
-    )
-
-
-def _too_hot(water_degc: float, where: str, pressure_bar_g: float, pressure_key: str) -> Iterator[Problem]:
-    boiling_degc = k_to_degc(float(saturation_temperature_k(bar_g_to_pa(pressure_bar_g))))
-    if water_degc >= boiling_degc:
-        yield Problem(
-            code="C111",
-            where=where,
-            found=f"found {water_degc:g} degC",
-            allowed=f"must be below boiling at {pressure_key} = {pressure_bar_g:g} bar g,"
-            f" {boiling_degc:.1f} degC",
-        )
-
-
-def _boiler_problems(draft: Draft) -> Iterator[Problem]:
-    for name, times in Counter(boiler.name for boiler in draft.existing_boilers).items():
-        if times > 1:
-            yield Problem(
-                code="C112",
-                where=f"{draft.file}: existing_boiler.name",
-                found=f"'{name}' is given to {times} boilers",
-                allowed="give each boiler its own name",
-            )
-    for boiler in draft.existing_boilers:
-        place = f"{draft.file}: {boiler_place(boiler.name)},"
-        yield from _type_problems(boiler, place, draft)
-
-
-def _catalogue_problems(draft: Draft) -> Iterator[Problem]:
-    catalogue = draft.new_boiler
-    if catalogue is None:
-        return
-    place = f"{draft.file}: new_boiler,"
-    yield from _type_problems(catalogue, place, draft)
-    for rating, times in Counter(size.rating_kg_h for size in catalogue.sizes).items():
-        if times > 1:
-            yield Problem(
-                code="C114",
-                where=f"{place} sizes",
-                found=f"the rating {rating:g} kg/h is listed {times} times",
-                allowed="list each rating once",
-            )
-
-
-def _pressure_problems(boiler: BoilerType, place: str, steam: Steam) -> Iterator[Problem]:
-    today = steam.boiler_pressure_bar_g
-    if boiler.design_pressure_bar_g < today:
-        yield Problem(
-            code="C113",
-            where=f"{place} design_pressure_bar_g",
-            found=f"found {boiler.design_pressure_bar_g:g} bar g",
-            allowed=f"must be at least steam.boiler_pressure_bar_g, {today:g} bar g,"
-            " at which all boilers work",
-        )
-    if boiler.burner_pressure_band_bar >= today:
-        yield Problem(
-            code="C128",
-            where=f"{place} burner_pressure_band_bar",
-            found=f"found {boiler.burner_pressure_band_bar:g} bar",
-            allowed=f"must be less than steam.boiler_pressure_bar_g, {today:g} bar g",
-        )
-    if boiler.efficiency_pressure_bar_g is not None:
-        yield from _too_hot(
-            steam.feedwater_temperature_degc,
-            f"{place} efficiency_pressure_bar_g against steam.feedwater_temperature_degc",
-            boiler.efficiency_pressure_bar_g,
-            "efficiency_pressure_bar_g",
-        )
-
-
-def _type_problems(boiler: BoilerType, place: str, draft: Draft) -> Iterator[Problem]:
-    if draft.steam is not None:
-        yield from _pressure_problems(boiler, place, draft.steam)
-    loads = [point.load_percent for point in boiler.efficiency_points]
-    if any(later <= earlier for earlier, later in pairwise(loads)):
-        yield Problem(
-            code="C115",
-            where=f"{place} efficiency_points",
-            found=f"load_percent runs {', '.join(f'{load:g}' for load in loads)}",
-            allowed="must rise from point to point",
-        )
-    elif loads[-1] != 100.0:
-        yield Problem(
-            code="C116",
-            where=f"{place} efficiency_points",
-            found=f"the last point is at {loads[-1]:g} % load",
-            allowed="must reach 100 %",
-        )
-    smallest = 100.0 / boiler.turndown_ratio
-    if loads[0] > smallest + LOAD_ROUNDING_PERCENT:
-        yield Problem(
-            code="C116",
-            where=f"{place} efficiency_points",
-            found=f"the first point is at {loads[0]:g} % load",
-            allowed=f"must start at or below the smallest firing load, {smallest:.4g} %"
-            f" with turndown_ratio {boiler.turndown_ratio:g}",
-        )
-    if draft.fuel is None:
-        return
-    best = max(boiler.efficiency_points, key=lambda point: point.efficiency_percent)
-    net = net_efficiency(best.efficiency_percent, boiler.calorific_basis, draft.fuel)
-    if net > 1.0:
-        yield Problem(
-            code="C117",
-            where=f"{place} efficiency_points",
-            found=f"{best.efficiency_percent:g} % on gross (hhv) at {best.load_percent:g} % load is"
-            f" {100.0 * net:.1f} % on net calorific value",
-            allowed="cannot exceed 100 %; a maker's figure is mostly net, then calorific_basis = 'lhv'",
-        )
-
-
 def _fuel_problems(draft: Draft) -> Iterator[Problem]:
     fuel = draft.fuel
     if fuel is None or fuel.kind == "electricity":
@@ -214,7 +68,7 @@ def _vessel_problems(draft: Draft) -> Iterator[Problem]:
     if vessel is None:
         return
     if vessel.make_up_temperature_degc is not None:
-        yield from _too_hot(
+        yield from boiling_problems(
             vessel.make_up_temperature_degc,
             f"{draft.file}: vessel.make_up_temperature_degc",
             min(vessel.discharged_pressures_bar_g),

@@ -10,8 +10,9 @@ from evenfire.boiler import fuel_spec
 from evenfire.case.assumptions import assumption, default_notices
 from evenfire.case.boilers import boiler_offers
 from evenfire.case.case import Case, PlanRequest, VesselOffer
-from evenfire.case.checks import lhv_to_hhv, possible_alternatives
+from evenfire.case.checks import possible_alternatives
 from evenfire.case.draft import boiler_place
+from evenfire.case.fuel_basis import lhv_to_hhv
 from evenfire.case.schema import CaseFile
 from evenfire.case.schema_money import AlternativeName, Money
 from evenfire.case.schema_section import Section
@@ -28,7 +29,7 @@ SECONDS_PER_MINUTE = 60.0
 
 
 def case_in_si(
-    written: CaseFile, folder: Path, record_file: Path, input_hashes: tuple[tuple[str, str], ...]
+    written: CaseFile, file: Path, record_file: Path, input_hashes: tuple[tuple[str, str], ...]
 ) -> Case:
     """The case that the models see, from a case file in which nothing is wrong.
 
@@ -36,14 +37,14 @@ def case_in_si(
     ----------
     written : CaseFile
         The whole case file, checked.
-    folder, record_file : Path
-        Where the case and its record lie.
+    file, record_file : Path
+        The case file and its record.
     input_hashes : tuple of (str, str)
         File name and sha256 of every input.
     """
-    boilers, boiler_notices = boiler_offers(written)
+    boilers, boiler_notices = boiler_offers(written, str(file))
     return Case(
-        folder=folder,
+        folder=file.parent,
         name=written.site.name,
         question=written.site.question,
         record_file=record_file,

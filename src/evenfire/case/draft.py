@@ -44,6 +44,11 @@ def boiler_place(name: str) -> str:
     return f"boiler '{name}'"
 
 
+def new_boiler_name(rating_kg_h: float) -> str:
+    """What a boiler of the catalogue is called."""
+    return f"New boiler, {rating_kg_h / 1000.0:g} t/h"
+
+
 def case_draft(raw: Mapping[str, Any], file: str) -> tuple[Draft, list[Problem]]:
     """The sections of a case as read from TOML, and every defect found inside them.
 

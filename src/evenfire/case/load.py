@@ -66,7 +66,7 @@ def load_case(path: str | Path, changes: Mapping[str, float] | None = None) -> C
     if problems:
         raise CaseError(*problems)
     return case_in_si(
-        CaseFile.model_validate(raw), file.parent, record_file, (_hash(file, content), _hash(record_file))
+        CaseFile.model_validate(raw), file, record_file, (_hash(file, content), _hash(record_file))
     )
 
 

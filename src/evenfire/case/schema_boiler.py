@@ -29,6 +29,51 @@ class LoadPoint(Section):
     ]
 
 
+class StackReading(Section):
+    """What a flue gas analyser shows at one load."""
+
+    load_percent: Annotated[
+        float,
+        quantity("%", "Steam output over rated output, while firing steadily.", above=0.0, at_most=100.0),
+    ]
+    stack_temperature_degc: Annotated[
+        float,
+        quantity(
+            "degC",
+            "Flue gas behind the last heating surface in place; ahead of an economiser that is added.",
+            at_least=0.0,
+            at_most=500.0,
+        ),
+    ]
+    o2_percent: Annotated[
+        float | None,
+        quantity("%", "Oxygen in dry flue gas; this or co2_percent.", at_least=0.0, at_most=18.0),
+    ] = None
+    co2_percent: Annotated[
+        float | None,
+        quantity("%", "Carbon dioxide in dry flue gas; this or o2_percent.", above=0.0, at_most=21.0),
+    ] = None
+
+
+class Economiser(Section):
+    """An economiser added behind the boiler whose stack readings are given."""
+
+    effectiveness_percent: Annotated[
+        float,
+        quantity("%", "Drop of the gas temperature over the largest possible one.", above=0.0, below=100.0),
+    ]
+    water_temperature_degc: Annotated[
+        float | None,
+        quantity(
+            "degC",
+            "Water into the economiser.",
+            at_least=1.0,
+            at_most=300.0,
+            when_left_out="steam.feedwater_temperature_degc",
+        ),
+    ] = None
+
+
 class BoilerType(Section):
     """Keys that a boiler in place and a boiler on offer share."""
 
@@ -60,18 +105,46 @@ class BoilerType(Section):
         ),
     ]
     efficiency_points: Annotated[
-        tuple[LoadPoint, ...],
+        tuple[LoadPoint, ...] | None,
         entry(
             "Efficiency at several loads, rising in load_percent, from the smallest continuous firing load"
             " (100 % / turndown_ratio) or below it to 100 %; fuel runs straight between the points.",
             shortest=1,
+            when_left_out="from stack_readings, which must then be stated",
         ),
-    ]
+    ] = None
+    stack_readings: Annotated[
+        tuple[StackReading, ...] | None,
+        entry(
+            "Stack temperature and oxygen (or carbon dioxide) over the same range of loads. They make the"
+            " efficiency by the Siegert formula and the casing loss; where efficiency_points are stated too,"
+            " they check them.",
+            shortest=1,
+            when_left_out="efficiency_points must be stated",
+        ),
+    ] = None
+    combustion_air_temperature_degc: Annotated[
+        float | None,
+        quantity(
+            "degC",
+            "Air to the burner while the stack was read; needs stack_readings.",
+            at_least=-50.0,
+            at_most=200.0,
+            when_left_out="steam.ambient_temperature_degc",
+        ),
+    ] = None
+    economiser: Annotated[
+        Economiser | None,
+        entry(
+            "An economiser that is to be added behind the boiler as it was read; needs stack_readings.",
+            when_left_out="none is added",
+        ),
+    ] = None
     efficiency_pressure_bar_g: Annotated[
         float | None,
         quantity(
             "bar g",
-            "Boiler pressure at which the efficiency points were measured or guaranteed.",
+            "Boiler pressure at which the efficiency or the stack was measured or is guaranteed.",
             at_least=0.0,
             at_most=198.9,
             when_left_out="steam.boiler_pressure_bar_g",
@@ -119,6 +192,26 @@ class BoilerType(Section):
             when_left_out="the rating in two minutes, common practice",
         ),
     ] = None
+    purge_seconds: Annotated[
+        float | None,
+        quantity(
+            "s",
+            "Purging before and after firing, together, per burner start.",
+            at_least=0.0,
+            at_most=3600.0,
+            when_left_out="60 s",
+        ),
+    ] = None
+    purge_gas_temperature_degc: Annotated[
+        float | None,
+        quantity(
+            "degC",
+            "Temperature at which the purge air leaves the hot boiler.",
+            at_least=0.0,
+            at_most=400.0,
+            when_left_out="150 degC",
+        ),
+    ] = None
     stack_loss_percent_per_k: Annotated[
         float | None,
         quantity(
@@ -127,7 +220,7 @@ class BoilerType(Section):
             " pressure moves the stack temperature.",
             at_least=0.0,
             at_most=1.0,
-            when_left_out="Siegert slope of the fuel",
+            when_left_out="Siegert slope of the fuel, at the oxygen read or at 3 %",
         ),
     ] = None
     start_wear_cost: Annotated[
@@ -154,6 +247,17 @@ class RatedBoiler(Section):
             when_left_out="from rating and boiler pressure",
         ),
     ] = None
+    casing_loss_kw: Annotated[
+        float | None,
+        quantity(
+            "kW",
+            "Heat lost by radiation and convection while firing, the same at every load; needs"
+            " stack_readings.",
+            at_least=0.0,
+            at_most=10_000.0,
+            when_left_out="from rating and boiler pressure",
+        ),
+    ] = None
     water_content_m3: Annotated[
         float | None,
         quantity(
@@ -172,7 +276,7 @@ class RatedBoiler(Section):
             "Heat of the boiler carried off by purge air at each burner start.",
             at_least=0.0,
             at_most=1000.0,
-            when_left_out="from rating and boiler temperature",
+            when_left_out="full combustion air over purge_seconds at purge_gas_temperature_degc",
         ),
     ] = None
     cold_start_fuel_kwh_lhv: Annotated[
@@ -182,7 +286,7 @@ class RatedBoiler(Section):
             "Fuel, on net calorific value, that brings the cold boiler to pressure.",
             at_least=0.0,
             at_most=1.0e6,
-            when_left_out="heating water and steel from 20 degC at lowest firing",
+            when_left_out="heating water and steel from ambient at lowest firing",
         ),
     ] = None
     maintenance_per_year: Annotated[

@@ -59,7 +59,7 @@ class Steam(Section):
     feedwater_temperature_degc: Annotated[
         float,
         quantity(
-            "degC", "Feedwater at the boiler, after deaerator and economiser.", at_least=1.0, at_most=300.0
+            "degC", "Feedwater behind the deaerator, ahead of any economiser.", at_least=1.0, at_most=300.0
         ),
     ]
     blowdown_percent: Annotated[
