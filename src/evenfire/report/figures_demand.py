@@ -1,0 +1,168 @@
+"""Figures of the record: what was measured, for how long, and what storage it would take."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+from matplotlib.axes import Axes
+
+from evenfire.appraisal.results import AlternativeResult, Appraisal
+from evenfire.demand.series import DemandRecord, FloatArray
+from evenfire.demand.statistics import load_duration_curve
+from evenfire.report.figures_paper import BLUE, FAINT, INK, LINES, SKY, VERMILION, Drawing, drawing, shown
+from evenfire.report.formats import digits, number
+from evenfire.units import KG_PER_TONNE, SECONDS_PER_HOUR, kg_s_to_t_h
+
+BUCKETS = 700
+CURVE_POINTS = 300
+
+
+def record_drawing(appraisal: Appraisal) -> Drawing:
+    """The whole record: lowest, mean and highest step of each short stretch, so no peak is lost."""
+    record = appraisal.record
+    lowest, mean, highest, hours = bucketed_t_h(record, BUCKETS)
+    times = np.datetime64(record.start, "s") + (hours * SECONDS_PER_HOUR).astype("timedelta64[s]")
+    today = today_capacity_t_h(appraisal)
+
+    def draw(panels: Sequence[Axes]) -> None:
+        axes = panels[0]
+        axes.fill_between(
+            times, lowest, highest, step="mid", color=SKY, linewidth=0, label="lowest to highest step"
+        )
+        axes.plot(times, mean, color=BLUE, linewidth=0.9, label="mean of the stretch")
+        axes.axhline(today, color=VERMILION, linewidth=1.2, linestyle="--", label="boilers in place today")
+        axes.set_ylim(bottom=0.0)
+        axes.set_xlim(times[0], times[-1])
+        axes.set_ylabel("steam demand [t/h]")
+        axes.set_xlabel("date")
+        axes.legend(loc="lower left", bbox_to_anchor=(0.0, 1.0), ncols=3)
+
+    return drawing(
+        "record",
+        "Steam demand as recorded",
+        f"Demand over {number(record.days)} days lies between {digits(float(lowest.min()))} and "
+        f"{digits(float(highest.max()))} t/h; the boilers in place today can make {digits(today)} t/h.",
+        (2.7,),
+        draw,
+    )
+
+
+def duration_drawing(appraisal: Appraisal) -> Drawing:
+    """Load duration curve of the raw record."""
+    curve = load_duration_curve(appraisal.record, CURVE_POINTS)
+    flow_t_h = curve.flow_kg_s * kg_s_to_t_h(1.0)
+    today = today_capacity_t_h(appraisal)
+    mean = kg_s_to_t_h(float(appraisal.record.flow_kg_s.mean()))
+
+    def draw(panels: Sequence[Axes]) -> None:
+        axes = panels[0]
+        axes.fill_between(100.0 * curve.share, flow_t_h, color=SKY, alpha=0.35, linewidth=0)
+        axes.plot(
+            100.0 * curve.share, flow_t_h, color=BLUE, linewidth=1.4, label="demand reached or exceeded"
+        )
+        axes.axhline(today, color=VERMILION, linewidth=1.2, linestyle="--", label="boilers in place today")
+        axes.axhline(mean, color=INK, linewidth=1.0, linestyle=":", label="mean demand")
+        axes.set_xlim(0.0, 100.0)
+        axes.set_ylim(bottom=0.0)
+        axes.set_xlabel("share of the record [%]")
+        axes.set_ylabel("steam demand [t/h]")
+        axes.legend(loc="upper right")
+
+    return drawing(
+        "duration",
+        "Load duration curve",
+        f"Demand falls from a peak of {digits(float(flow_t_h[0]))} t/h to {digits(float(flow_t_h[-1]))} t/h; "
+        f"its mean is {digits(mean)} t/h.",
+        (2.5,),
+        draw,
+    )
+
+
+def storage_need_drawing(appraisal: Appraisal) -> Drawing:
+    """S(C) of the raw record with each alternative's boilers and vessel as a point."""
+    need = appraisal.storage_need
+    capacity = need.capacity_kg_s * kg_s_to_t_h(1.0)
+    storage = need.storage_kg / KG_PER_TONNE
+    planned = [each for each in appraisal.alternatives if each.planned]
+    points = [(each.name, firm_capacity_t_h(each), steam_capacity_t(each)) for each in planned]
+    left = max(float(capacity[0]), 0.75 * min([x for _, x, _ in points], default=0.0))
+    right = 1.04 * max([float(capacity[-1]), *(x for _, x, _ in points)])
+    at_left = float(np.interp(left, capacity, storage))
+    top = 1.12 * max(at_left, *(y for _, _, y in points), 1e-3) if points else max(at_left, 1e-3)
+
+    def draw(panels: Sequence[Axes]) -> None:
+        axes = panels[0]
+        line_x, line_y = np.append(capacity, right), np.append(storage, 0.0)
+        axes.fill_between(line_x, line_y, color=VERMILION, alpha=0.13, linewidth=0)
+        axes.plot(line_x, line_y, color=INK, linewidth=1.4, label="storage the record needs")
+        for at, (name, x, y) in enumerate(points):
+            colour, marker, _ = LINES[at % len(LINES)]
+            axes.plot(
+                x,
+                y,
+                marker,
+                color=colour,
+                markersize=8,
+                markeredgecolor="white",
+                markeredgewidth=0.9,
+                clip_on=False,
+                zorder=5 + at,
+                linestyle="none",
+                label=shown(name),
+            )
+        axes.text(
+            left + 0.02 * (right - left),
+            0.04 * top,
+            "below the line: some peak is not met",
+            color=FAINT,
+            fontsize=8.5,
+            style="italic",
+        )
+        axes.set_xlim(left, right)
+        axes.set_ylim(0.0, top)
+        axes.set_xlabel("rating of all boilers of the alternative [t/h]")
+        axes.set_ylabel("steam from storage [t]")
+        axes.legend(loc="upper right")
+
+    named = "; ".join(f"{name}: {digits(x)} t/h and {digits(y)} t" for name, x, y in points)
+    return drawing(
+        "storage-need",
+        "Boiler capacity against the storage that the record needs",
+        f"Storage needed falls with boiler capacity and is nothing from {digits(float(capacity[-1]))} t/h "
+        f"on. Alternatives: {named}.",
+        (3.2,),
+        draw,
+    )
+
+
+def bucketed_t_h(record: DemandRecord, buckets: int) -> tuple[FloatArray, FloatArray, FloatArray, FloatArray]:
+    """Lowest, mean and highest demand [t/h] of equal stretches, and hours from the start to their middle.
+
+    Every step belongs to one stretch, so the highest of the highest is the peak of the record.
+    """
+    flow = record.flow_kg_s * kg_s_to_t_h(1.0)
+    edges = np.unique(np.linspace(0, flow.size, min(buckets, flow.size) + 1).astype(np.int64))
+    starts, lengths = edges[:-1], np.diff(edges)
+    middle = (starts + lengths / 2.0) * record.step_s / SECONDS_PER_HOUR
+    return (
+        np.minimum.reduceat(flow, starts),
+        np.add.reduceat(flow, starts) / lengths,
+        np.maximum.reduceat(flow, starts),
+        middle,
+    )
+
+
+def today_capacity_t_h(appraisal: Appraisal) -> float:
+    """Rating of all existing boilers [t/h]."""
+    return kg_s_to_t_h(sum(offer.spec.rated_kg_s for offer in appraisal.case.boilers if offer.existing))
+
+
+def firm_capacity_t_h(alternative: AlternativeResult) -> float:
+    """Rating of all boilers of an alternative [t/h]."""
+    return sum(boiler.rating_kg_h for boiler in alternative.boilers) / KG_PER_TONNE
+
+
+def steam_capacity_t(alternative: AlternativeResult) -> float:
+    """Steam capacity of an alternative's vessel [t]; 0 without one."""
+    return alternative.vessel.steam_capacity_kg / KG_PER_TONNE if alternative.vessel is not None else 0.0

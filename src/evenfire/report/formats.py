@@ -1,0 +1,93 @@
+"""Numbers as people read them: thousands separated, a real minus sign, no more digits than they carry."""
+
+from __future__ import annotations
+
+import math
+
+MISSING = "–"
+"""Shown where there is no number."""
+
+
+def number(value: float | None, decimals: int = 0) -> str:
+    """A number with a fixed count of decimals.
+
+    >>> number(1234567.4), number(-0.04, 1), number(-2.5, 1), number(None)
+    ('1,234,567', '0.0', '−2.5', '–')
+    """
+    if value is None or value != value:
+        return MISSING
+    rounded = round(value, decimals) + 0.0
+    return f"{rounded:,.{decimals}f}".replace("-", "−")
+
+
+def digits(value: float, significant: int = 3) -> str:
+    """A number with at least so many significant digits, its whole part never rounded.
+
+    >>> digits(0.012345), digits(9.5132), digits(25200.0), digits(0.0)
+    ('0.0123', '9.51', '25,200', '0')
+    """
+    if value == 0.0:
+        return "0"
+    return number(value, max(0, significant - 1 - math.floor(math.log10(abs(value)))))
+
+
+def plain(value: float) -> str:
+    """An input as it was stated: up to six significant digits, no trailing zeros.
+
+    >>> plain(46.0), plain(0.0175), plain(172000.0)
+    ('46', '0.0175', '172,000')
+    """
+    text = f"{value:.6g}" if abs(value) < 1.0 else f"{float(f'{value:.6g}'):,.6f}".rstrip("0").rstrip(".")
+    return text.replace("-", "−")
+
+
+def percent(share: float | None, decimals: int = 1) -> str:
+    """A share as per cent.
+
+    >>> percent(0.0561), percent(None)
+    ('5.6 %', '–')
+    """
+    return MISSING if share is None else f"{number(100.0 * share, decimals)} %"
+
+
+def signed_percent(share: float, decimals: int = 1) -> str:
+    """A relative error as per cent with its sign.
+
+    >>> signed_percent(0.0123), signed_percent(-0.2), signed_percent(0.0)
+    ('+1.2 %', '−20.0 %', '0.0 %')
+    """
+    text = percent(share, decimals)
+    return f"+{text}" if round(100.0 * share, decimals) > 0.0 else text
+
+
+def gap_words(gap: float | None) -> str:
+    """A proven gap, never rounded down to nothing.
+
+    >>> gap_words(0.00061), gap_words(0.000001), gap_words(0.0), gap_words(None)
+    ('0.06 %', 'below 0.01 %', '0 %', '–')
+    """
+    if gap is None:
+        return MISSING
+    if gap == 0.0:
+        return "0 %"
+    return "below 0.01 %" if gap < 1e-4 else percent(gap, 2)
+
+
+def thousands(amount: float | None) -> str:
+    """An amount of money in thousands, with one decimal below one hundred thousand.
+
+    >>> thousands(8104000.0), thousands(43210.0), thousands(0.0), thousands(None)
+    ('8,104', '43.2', '0', '–')
+    """
+    if amount is None or amount == 0.0:
+        return MISSING if amount is None else "0"
+    return number(amount / 1000.0, 0 if abs(amount) >= 1e5 else 1)
+
+
+def years(value: float) -> str:
+    """A time in years.
+
+    >>> years(1.94), years(1.0)
+    ('1.9 years', '1.0 years')
+    """
+    return f"{number(value, 1)} years"

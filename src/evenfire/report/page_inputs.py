@@ -1,0 +1,184 @@
+"""Tables of what an appraisal rests on: record, typical days, inputs, assumptions, files."""
+
+from __future__ import annotations
+
+from evenfire.appraisal.results import Appraisal
+from evenfire.demand.statistics import demand_statistics
+from evenfire.errors import Notice
+from evenfire.report.formats import digits, number, percent, plain, signed_percent
+from evenfire.report.page_table import Group, Table, plain_table
+from evenfire.report.trade_units import SECONDS_PER_MINUTE, Quantity, boiler_quantities, input_sections
+from evenfire.units import KG_PER_TONNE, SECONDS_PER_HOUR, kg_s_to_t_h
+
+SECTION_TITLES = {
+    "steam": "Steam",
+    "fuel": "Fuel and carbon",
+    "money": "Money",
+    "plan": "Plan",
+    "vessel": "Accumulator on offer",
+}
+ORIGIN_WORDS = {"assumed": "assumed by the program", "note": "remark", "warning": "warning"}
+
+
+def record_table(appraisal: Appraisal) -> Table:
+    """The record in figures."""
+    record = appraisal.record
+    found = demand_statistics(record)
+    return plain_table(
+        "The record in figures.",
+        ("", "", ""),
+        (
+            ("File", record.source, ""),
+            ("First step", f"{record.start:%Y-%m-%d %H:%M}", "local time"),
+            ("Length", number(found.days, 1), "days"),
+            ("Step", plain(record.step_s / SECONDS_PER_MINUTE), "min"),
+            ("Steam", number(found.steam_kg / KG_PER_TONNE), "t"),
+            ("Mean demand", digits(kg_s_to_t_h(found.mean_kg_s)), "t/h"),
+            ("Peak demand, highest step", digits(kg_s_to_t_h(found.peak_kg_s)), "t/h"),
+            ("Lowest step", digits(kg_s_to_t_h(found.lowest_kg_s)), "t/h"),
+            ("Mean over peak", percent(found.load_factor), ""),
+            (
+                "Steepest rise from step to step",
+                digits(kg_s_to_t_h(found.steepest_rise_kg_s2) * SECONDS_PER_MINUTE),
+                "t/h per min",
+            ),
+        ),
+        word_columns=(2,),
+    )
+
+
+def storage_need_table(appraisal: Appraisal) -> Table:
+    """The stretches of the record that decide how much storage a boiler capacity needs."""
+    need = appraisal.storage_need
+    return plain_table(
+        "Stretches of the record that decide the storage need.",
+        ("Boilers of [t/h]", "need storage of [t]", "for a stretch of [h]", "that begins after [days]"),
+        tuple(
+            (
+                digits(kg_s_to_t_h(float(need.capacity_kg_s[at]))),
+                digits(float(need.storage_kg[at]) / KG_PER_TONNE),
+                digits(piece.duration_s / SECONDS_PER_HOUR),
+                number(piece.first_step * appraisal.record.step_s / 86_400.0, 2),
+            )
+            for at, piece in enumerate(need.pieces)
+        ),
+    )
+
+
+def typical_days_table(appraisal: Appraisal) -> Table:
+    """The typical days and their weights."""
+    return plain_table(
+        "Typical days: real days of the record, each standing for several.",
+        ("Day", "Date", "Days per year", "Steam [t]", "Mean [t/h]", "Highest step [t/h]"),
+        tuple(
+            (
+                day.name,
+                day.date.isoformat(),
+                number(day.days_per_year, 1),
+                digits(kg_s_to_t_h(float(day.flow_kg_s.mean())) * 24.0),
+                digits(kg_s_to_t_h(float(day.flow_kg_s.mean()))),
+                digits(kg_s_to_t_h(float(day.flow_kg_s.max()))),
+            )
+            for day in appraisal.typical_days.days
+        ),
+        word_columns=(1,),
+    )
+
+
+def typical_days_errors(appraisal: Appraisal) -> Table:
+    """What the typical days get wrong."""
+    typical = appraisal.typical_days
+    return plain_table(
+        "What the typical days get wrong.",
+        ("", "Error", "Meaning"),
+        (
+            (
+                "Steam of a year",
+                signed_percent(typical.energy_error),
+                "steam of the weighted days against steam of the record",
+            ),
+            (
+                "Load duration curve",
+                percent(typical.duration_curve_error),
+                "mean distance of the two curves, as a share of mean demand",
+            ),
+            (
+                "Highest step",
+                signed_percent(typical.peak_error),
+                "highest step of the typical days against the highest raw step; "
+                "shorter peaks are averaged away here and checked on the raw record instead",
+            ),
+        ),
+        word_columns=(2,),
+    )
+
+
+def inputs_table(appraisal: Appraisal) -> Table:
+    """Every input that is one number, as the program used it."""
+    return Table(
+        caption="Inputs as the program used them.",
+        head=("", "", ""),
+        groups=tuple(
+            Group(title=SECTION_TITLES[section], rows=tuple(_input_row(each) for each in quantities))
+            for section, quantities in input_sections(appraisal.case)
+        ),
+        word_columns=(2,),
+    )
+
+
+def boilers_on_offer_table(appraisal: Appraisal) -> Table:
+    """Boilers in place and boilers on offer, as the program used them."""
+    currency = appraisal.case.finance.currency
+    offers = [(offer, boiler_quantities(offer)) for offer in appraisal.case.boilers]
+    head = tuple(_head(each, currency) for each in offers[0][1])
+    return Table(
+        caption="Boilers as the program used them; efficiency on net calorific value.",
+        head=head,
+        groups=tuple(
+            Group(
+                title=title, rows=tuple(_boiler_row(each) for offer, each in offers if offer.existing is old)
+            )
+            for title, old in (("In place", True), ("On offer", False))
+            if any(offer.existing is old for offer, _ in offers)
+        ),
+    )
+
+
+def notices_table(notices: tuple[Notice, ...], caption: str) -> Table:
+    """Notices with their origin and code."""
+    return plain_table(
+        caption,
+        ("What", "Origin", "Code"),
+        tuple((each.text, ORIGIN_WORDS.get(each.severity, each.severity), each.code) for each in notices),
+        word_columns=(1, 2),
+    )
+
+
+def files_table(appraisal: Appraisal) -> Table:
+    """Input files with their hashes, and versions of the programs."""
+    return Table(
+        caption="Files and versions.",
+        head=("", ""),
+        groups=(
+            Group(title="SHA-256 of the input files", rows=appraisal.case.input_hashes),
+            Group(title="Versions", rows=appraisal.versions),
+        ),
+        word_columns=(1,),
+    )
+
+
+def _input_row(quantity: Quantity) -> tuple[str, str, str]:
+    value = quantity.value if isinstance(quantity.value, str) else plain(quantity.value)
+    unit = "" if quantity.unit == "1" else quantity.unit
+    return (quantity.words, value, unit)
+
+
+def _head(quantity: Quantity, currency: str) -> str:
+    unit = currency if quantity.unit == "money" else quantity.unit
+    return f"{quantity.words} [{unit}]" if unit else quantity.words
+
+
+def _boiler_row(quantities: tuple[Quantity, ...]) -> tuple[str, ...]:
+    return tuple(
+        each.value if isinstance(each.value, str) else plain(round(each.value, 1)) for each in quantities
+    )
