@@ -67,7 +67,7 @@ def test_whole_number_given_as_float_is_a_whole_number():
         ("existing_boiler[2].turndown_ratio", "did you mean"),
         ("site.name", "numeric inputs of this case are"),
         ("fuel", "numeric inputs of this case are"),
-        ("", "numeric inputs of this case are record.largest_gap_minutes, steam"),
+        ("", "numeric inputs of this case are record.largest_gap_minutes, record.header_row"),
     ],
 )
 def test_unknown_path_is_refused_with_an_offer(path, offer):

@@ -9,7 +9,7 @@ import pytest
 
 from evenfire.case.load import load_case
 from evenfire.case.schema_boiler import ExistingBoiler
-from evenfire.demand.read import RecordFormat
+from evenfire.demand.record_format import RecordFormat
 from evenfire.errors import CaseError
 from evenfire.plant import SteamConditions, WindowSpec
 

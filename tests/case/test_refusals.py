@@ -214,7 +214,7 @@ REFUSALS = [
     ),
     pytest.param(
         ('flow_column = "steam_kg_h"', 'flow_column = "time"'),
-        "case.toml: record.flow_column: found 'time', which is also time_column; name two different columns [C124]",
+        "case.toml: record: column 'time': is named for two purposes; name different columns [R103]",
         id="one column twice",
     ),
     pytest.param(

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from pathlib import Path
 
-from evenfire.demand.read import RecordFormat
+from evenfire.demand.record_format import RecordFormat
 from evenfire.errors import Notice
 from evenfire.money.terms import Finance, Investment, Prices
 from evenfire.plant import BoilerSpec, FuelSpec, SteamConditions, VesselRules, WindowSpec

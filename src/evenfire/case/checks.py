@@ -8,7 +8,9 @@ from collections.abc import Collection, Iterator
 from evenfire.case.checks_boiler import boiler_problems, catalogue_problems
 from evenfire.case.checks_steam import boiling_problems, steam_problems
 from evenfire.case.draft import Draft
+from evenfire.case.record import record_format
 from evenfire.case.schema_money import AlternativeName
+from evenfire.demand.record_format import format_problems
 from evenfire.errors import Problem
 
 
@@ -41,13 +43,9 @@ def _record_problems(draft: Draft) -> Iterator[Problem]:
             found="missing",
             allowed=f"with gaps = '{record.gaps}' state the longest gap that may be filled [min]",
         )
-    if record.time_column == record.flow_column:
-        yield Problem(
-            code="C124",
-            where=f"{draft.file}: record.flow_column",
-            found=f"found '{record.flow_column}', which is also time_column",
-            allowed="name two different columns",
-        )
+    steam = draft.steam
+    if steam is not None and not list(steam_problems(draft)):
+        yield from format_problems(record_format(record, steam)[0], f"{draft.file}: record")
 
 
 def _fuel_problems(draft: Draft) -> Iterator[Problem]:

@@ -13,11 +13,11 @@ from evenfire.case.case import Case, PlanRequest, VesselOffer
 from evenfire.case.checks import possible_alternatives
 from evenfire.case.draft import boiler_place
 from evenfire.case.fuel_basis import lhv_to_hhv
+from evenfire.case.record import record_format
 from evenfire.case.schema import CaseFile
 from evenfire.case.schema_money import AlternativeName, Money
 from evenfire.case.schema_section import Section
-from evenfire.case.schema_site import Fuel, Record, Steam, Vessel
-from evenfire.demand.read import RecordFormat
+from evenfire.case.schema_site import Fuel, Steam, Vessel
 from evenfire.errors import Notice
 from evenfire.money.terms import Finance, Price, Prices
 from evenfire.plant import FuelSpec, SteamConditions, VesselRules, WindowSpec
@@ -42,13 +42,14 @@ def case_in_si(
     input_hashes : tuple of (str, str)
         File name and sha256 of every input.
     """
+    form, record_notices = record_format(written.record, written.steam)
     boilers, boiler_notices = boiler_offers(written, str(file))
     return Case(
         folder=file.parent,
         name=written.site.name,
         question=written.site.question,
         record_file=record_file,
-        record_format=_record_format(written.record),
+        record_format=form,
         conditions=_conditions(written.steam),
         fuel=_fuel(written.fuel),
         boilers=boilers,
@@ -57,19 +58,9 @@ def case_in_si(
         finance=_finance(written.money),
         fan_power_w_per_kg_s=written.money.fan_and_pump_kwh_per_t_steam * J_PER_KWH / KG_PER_TONNE,
         plan=_plan(written),
-        notices=(*_notices(written), *boiler_notices),
+        notices=(*record_notices, *_notices(written), *boiler_notices),
         fuel_price_basis=written.fuel.calorific_basis,
         input_hashes=input_hashes,
-    )
-
-
-def _record_format(record: Record) -> RecordFormat:
-    return RecordFormat(
-        time_column=record.time_column,
-        flow_column=record.flow_column,
-        flow_unit=record.flow_unit,
-        gaps=record.gaps,
-        largest_gap_s=(record.largest_gap_minutes or 0.0) * SECONDS_PER_MINUTE,
     )
 
 

@@ -12,8 +12,9 @@ from evenfire.case.messages import key_offer, section_problems, written
 from evenfire.case.schema import CaseFile
 from evenfire.case.schema_boiler import ExistingBoiler, NewBoiler
 from evenfire.case.schema_money import Money, Plan
+from evenfire.case.schema_record import Record
 from evenfire.case.schema_section import Section, section_of
-from evenfire.case.schema_site import Fuel, Record, Site, Steam, Vessel
+from evenfire.case.schema_site import Fuel, Site, Steam, Vessel
 from evenfire.errors import Problem
 
 AnySection = TypeVar("AnySection", bound=Section)

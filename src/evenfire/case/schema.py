@@ -6,8 +6,9 @@ from typing import Annotated, Any
 
 from evenfire.case.schema_boiler import ExistingBoiler, NewBoiler
 from evenfire.case.schema_money import Money, Plan
+from evenfire.case.schema_record import Record
 from evenfire.case.schema_section import Section, entry
-from evenfire.case.schema_site import Fuel, Record, Site, Steam, Vessel
+from evenfire.case.schema_site import Fuel, Site, Steam, Vessel
 
 
 class CaseFile(Section):

@@ -1,4 +1,4 @@
-"""The site, record, steam, fuel and vessel sections of a case file."""
+"""The site, steam, fuel and vessel sections of a case file."""
 
 from __future__ import annotations
 
@@ -7,8 +7,6 @@ from typing import Annotated, Literal
 from evenfire.case.schema_boiler import CalorificBasis
 from evenfire.case.schema_section import LARGEST_PRICE_PER_MWH, Section, entry, quantity
 
-FlowUnit = Literal["kg/h", "t/h", "lb/h", "kg/s"]
-GapRule = Literal["refuse", "hold", "interpolate", "zero"]
 FuelKind = Literal["natural_gas", "gas_oil", "heavy_fuel_oil", "lpg", "wood", "electricity"]
 
 
@@ -19,32 +17,6 @@ class Site(Section):
     question: Annotated[str, entry("The question in the reader's words; shown at the top of the report.")] = (
         ""
     )
-
-
-class Record(Section):
-    """The measured steam demand: a CSV file, plain or .gz, beside the case."""
-
-    file: Annotated[str, entry("Name of the record file, relative to the case file.", shortest=1)]
-    time_column: Annotated[str, entry("Column with the local time at the start of each step.", shortest=1)]
-    flow_column: Annotated[str, entry("Column with the mean steam flow of each step.", shortest=1)]
-    flow_unit: Annotated[FlowUnit, entry("Unit of the flow column.")]
-    gaps: Annotated[
-        GapRule,
-        entry(
-            "What to do where values are missing: 'refuse' the record, 'hold' the last value, 'interpolate'"
-            " between the values on both sides, or 'zero' where the plant stood still. What was filled is"
-            " reported."
-        ),
-    ] = "refuse"
-    largest_gap_minutes: Annotated[
-        float | None,
-        quantity(
-            "min",
-            "Longest gap that may be filled; must be stated unless gaps = 'refuse'.",
-            above=0.0,
-            at_most=100_000.0,
-        ),
-    ] = None
 
 
 class Steam(Section):
