@@ -45,7 +45,9 @@ def plan_inputs(
     return PlanInputs(
         step_h=case.plan.step_s / SECONDS_PER_HOUR,
         days=tuple(
-            PlanDay(name=day.name, days_per_year=day.days_per_year, demand_t_h=kg_s_to_t_h_array(day.flow_kg_s))
+            PlanDay(
+                name=day.name, days_per_year=day.days_per_year, demand_t_h=kg_s_to_t_h_array(day.flow_kg_s)
+            )
             for day in typical.days
         ),
         transitions_per_year=transitions_per_year(record, typical),
@@ -114,9 +116,7 @@ def transitions_per_year(record: DemandRecord, typical: TypicalDays) -> FloatArr
     return counts * (365.0 / length)
 
 
-def _plan_boiler(
-    case: Case, offer: BoilerOffer, working_pa: list[float], rates: PresentRates
-) -> PlanBoiler:
+def _plan_boiler(case: Case, offer: BoilerOffer, working_pa: list[float], rates: PresentRates) -> PlanBoiler:
     spec, conditions = offer.spec, case.conditions
     today = working_pa[0]
     step_s = case.plan.step_s
@@ -175,7 +175,9 @@ def vessel_investment(case: Case, price: float) -> Investment:
 
 def _segments(case: Case, number: int, table: WindowTable, pressure: int) -> list[VesselSegment]:
     """One segment between each pair of neighbouring volumes of the table."""
-    cost_k = [investment_present_cost(vessel_investment(case, price), case.finance) / K for price in table.price]
+    cost_k = [
+        investment_present_cost(vessel_investment(case, price), case.finance) / K for price in table.price
+    ]
     fuel_mwh_t = _full_load_fuel_mwh_t(case)
     segments = []
     for i in range(len(table.volume_m3) - 1):

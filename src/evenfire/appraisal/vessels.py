@@ -42,7 +42,8 @@ def boiler_working_pa(case: Case, window: WindowSpec | None) -> float:
 def price_on_curve(offer: VesselOffer, volume_m3: float, charged_pa: float) -> float:
     """The case's own cost curve: a power of volume, linear in charged pressure [currency]."""
     pressure = 1.0 + offer.pressure_cost_per_pa * (charged_pa - offer.reference_pa)
-    return offer.reference_cost * (volume_m3 / offer.reference_m3) ** offer.volume_exponent * pressure
+    size = float((volume_m3 / offer.reference_m3) ** offer.volume_exponent)
+    return offer.reference_cost * size * pressure
 
 
 def table_volumes_m3(offer: VesselOffer) -> tuple[float, ...]:

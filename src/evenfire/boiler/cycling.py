@@ -8,6 +8,7 @@ import numpy.typing as npt
 from evenfire.boiler.curve import lowest_firing_efficiency_lhv
 from evenfire.errors import out_of_range
 from evenfire.plant import BoilerSpec
+from evenfire.units import SECONDS_PER_HOUR
 from evenfire.water import saturation
 
 FloatArray = npt.NDArray[np.float64]
@@ -101,3 +102,29 @@ def start_fuel_j_lhv(spec: BoilerSpec, working_pa: float) -> float:
         As :func:`evenfire.boiler.curve.efficiency_lhv`.
     """
     return spec.purge_energy_j / lowest_firing_efficiency_lhv(spec, working_pa)
+
+
+def cycling_starts_per_hour(load_kg_h: float, firing_kg_h: float, buffer_kg: float) -> float:
+    """Burner starts per hour of on/off firing in trade units: n = q (Q - q) / (B Q).
+
+    For use by hand; :func:`cycling_starts_per_s` is the same law with minimum off time and standing loss.
+
+    Parameters
+    ----------
+    load_kg_h, firing_kg_h : float
+        Steam drawn and output while firing [kg/h].
+    buffer_kg : float
+        Steam the boiler's water gives between cut-out and cut-in pressure [kg].
+
+    Raises
+    ------
+    OutOfRangeError
+        P111, P114 as :func:`cycling_starts_per_s`.
+
+    Examples
+    --------
+    >>> round(cycling_starts_per_hour(3000.0, 10000.0, 200.0), 9)
+    10.5
+    """
+    starts = cycling_starts_per_s(load_kg_h / SECONDS_PER_HOUR, firing_kg_h / SECONDS_PER_HOUR, buffer_kg)
+    return float(starts) * SECONDS_PER_HOUR

@@ -12,6 +12,7 @@ from numpy.typing import NDArray
 
 from evenfire.plan.compiled import CompiledModel, highs_lp
 from evenfire.plan.outcome import Has, Stop
+from evenfire.plan.quiet import QuietHighs
 
 FloatArray = NDArray[np.float64]
 
@@ -24,7 +25,6 @@ _STOP = {
     highspy.HighsModelStatus.kUnboundedOrInfeasible: Stop.INFEASIBLE,
     highspy.HighsModelStatus.kTimeLimit: Stop.TIME_LIMIT,
     highspy.HighsModelStatus.kInterrupt: Stop.INTERRUPTED,
-    highspy.HighsModelStatus.kHighsInterrupt: Stop.INTERRUPTED,
     highspy.HighsModelStatus.kIterationLimit: Stop.SOLVER_LIMIT,
     highspy.HighsModelStatus.kSolutionLimit: Stop.SOLVER_LIMIT,
     highspy.HighsModelStatus.kObjectiveBound: Stop.SOLVER_LIMIT,
@@ -96,11 +96,7 @@ def _run(
     presolve: str,
 ) -> MilpResult:
     begin = time.monotonic()
-    solver = highspy.Highs()
-    solver.setOptionValue("output_flag", True)
-    solver.setOptionValue("log_to_console", False)
-    solver.setOptionValue("threads", 1)
-    solver.setOptionValue("random_seed", 0)
+    solver = QuietHighs()
     solver.setOptionValue("mip_rel_gap", gap)
     solver.setOptionValue("mip_abs_gap", 0.0)
     solver.setOptionValue("time_limit", time_limit_s)

@@ -14,10 +14,8 @@ import pyomo.environ as pyo
 
 from evenfire.plan.inputs import AlternativeRules, PlanBoiler, PlanInputs, PlanMode, VesselUse
 
-Model = pyo.ConcreteModel
 
-
-def alternative_model(inputs: PlanInputs, rules: AlternativeRules) -> Model:
+def alternative_model(inputs: PlanInputs, rules: AlternativeRules) -> pyo.ConcreteModel:
     """The complete model of one alternative.
 
     Parameters
@@ -32,7 +30,7 @@ def alternative_model(inputs: PlanInputs, rules: AlternativeRules) -> Model:
     pyomo.environ.ConcreteModel
         Minimise ``net_present_cost`` [k].
     """
-    m = Model(name=rules.name)
+    m: Any = pyo.ConcreteModel(name=rules.name)
     boilers = [boiler for boiler in inputs.boilers if boiler.name in rules.allowed]
     segments = inputs.vessel_segments if rules.vessel is not VesselUse.NONE else ()
     m.B = pyo.Set(initialize=range(len(boilers)), ordered=True)
@@ -49,7 +47,7 @@ def alternative_model(inputs: PlanInputs, rules: AlternativeRules) -> Model:
     _add_adequacy(m, inputs, rules, boilers)
     _add_fuel(m, inputs, boilers)
     _add_objective(m, inputs, boilers)
-    return m
+    return m  # type: ignore[no-any-return]  # Pyomo builds its components dynamically
 
 
 def _add_investment(m: Any, inputs: PlanInputs, rules: AlternativeRules, boilers: list[PlanBoiler]) -> None:

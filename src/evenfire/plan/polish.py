@@ -16,6 +16,7 @@ from numpy.typing import NDArray
 
 from evenfire.plan.inputs import PlanBoiler, PlanInputs, VesselSegment
 from evenfire.plan.outcome import DayDispatch, Plan
+from evenfire.plan.quiet import QuietHighs
 from evenfire.plan.tables import mode_costs_k_h, start_cost_k
 from evenfire.plan.translate import burner_starts
 
@@ -231,10 +232,7 @@ def _add_ramp(
 
 
 def _solved(lp: highspy.HighsLp) -> FloatArray | None:
-    solver = highspy.Highs()
-    solver.setOptionValue("log_to_console", False)
-    solver.setOptionValue("output_flag", False)
-    solver.setOptionValue("threads", 1)
+    solver = QuietHighs()
     solver.setOptionValue("primal_feasibility_tolerance", 1e-9)
     solver.setOptionValue("dual_feasibility_tolerance", 1e-9)
     solver.passModel(lp)

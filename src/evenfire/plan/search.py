@@ -12,6 +12,7 @@ import heapq
 import time
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass, field, replace
+from functools import partial
 from itertools import combinations, count
 
 import numpy as np
@@ -36,6 +37,7 @@ _QUANTA_T_PER_H = (0.25, 0.125, 0.0625, 0.03125)
 _EXPECTED_LOSS = (4e-3, 1e-3, 4e-4, 2e-4)
 """What a bound at each quantum usually loses of the cost: decides whether to refine it or to split."""
 _NARROWEST_M3 = 0.25
+_THREADS = 2
 _MOST_STATES = (1, 64, 64, 64)
 """Joint burner states told apart at each quantum; 1 leaves minimum times out of the bound."""
 
@@ -307,6 +309,11 @@ class Search:
             self._bounds[key] = self._inputs.days[day].days_per_year * problem.lower_bound()
         return self._bounds[key]
 
+    def _missing_bound(
+        self, node: _Node, store: Store, stage: int, which: tuple[int, tuple[str, ...]]
+    ) -> float:
+        return self._day_bound(node, which[0], which[1], store, stage)
+
     def _operation_k(self, node: _Node, stage: int) -> tuple[float, tuple[tuple[str, ...], ...]]:
         """Least operating cost over which boilers are hot on which day, with that choice."""
         store = self._store(node)
@@ -325,8 +332,8 @@ class Search:
             missing = [(day, best[day]) for day in days if (day, best[day]) not in exact]
             if not missing:
                 return total, best
-            with ThreadPoolExecutor(2) as pool:
-                values = pool.map(lambda x: self._day_bound(node, x[0], x[1], store, stage), missing)
+            with ThreadPoolExecutor(_THREADS) as pool:
+                values = pool.map(partial(self._missing_bound, node, store, stage), missing)
                 for pair, value in zip(missing, values, strict=True):
                     rough[pair] = max(rough[pair], value)
                     exact.add(pair)
@@ -345,8 +352,8 @@ class Search:
                 output, cost = mode_costs_k_h(boiler, mode, self._pressure(node), inputs.rates)
                 rates += [float(c / q) for q, c in zip(output, cost, strict=True) if q > 0]
         credit = max(0.0, store.credit_k_t)
-        cost = (energy - short) * (min(rates) - credit) + short * (inputs.rates.unmet_k_t - credit)
-        return inputs.days[day].days_per_year * cost
+        least = (energy - short) * (min(rates) - credit) + short * (inputs.rates.unmet_k_t - credit)
+        return inputs.days[day].days_per_year * least
 
     def _best_services(
         self,
@@ -364,7 +371,7 @@ class Search:
             * inputs.boiler(name).cold_start_fuel_mwh
             for name in node.boilers
         }
-        ranked = [sorted(choices, key=lambda x, d=day: day_cost[d, x]) for day in days]
+        ranked = [sorted(choices, key=lambda x: day_cost[day, x]) for day in days]
         least = [day_cost[day, ranked[day][0]] for day in days]
         rest = [sum(least[day:]) for day in range(len(least) + 1)]
         best_total, best = float("inf"), tuple(order[0] for order in ranked)

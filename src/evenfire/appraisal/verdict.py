@@ -1,0 +1,115 @@
+"""Which alternative wins, in a sentence or two, and over which fuel prices."""
+
+from __future__ import annotations
+
+from evenfire.appraisal.results import AlternativeResult
+from evenfire.case.case import Case
+from evenfire.units import J_PER_MWH, bar_abs_to_pa, pa_to_bar_g
+
+
+def best_of(results: tuple[AlternativeResult, ...]) -> AlternativeResult:
+    """The planned alternative with the least net present cost; of equal ones the first."""
+    planned = [result for result in results if result.net_present_cost is not None]
+    return min(planned, key=lambda result: result.net_present_cost or 0.0)
+
+
+def plant_words(result: AlternativeResult) -> str:
+    """The plant of an alternative in words."""
+    parts = [boiler.name for boiler in result.boilers]
+    if result.vessel is not None:
+        vessel = result.vessel
+        charged, discharged = (
+            pa_to_bar_g(bar_abs_to_pa(p)) for p in (vessel.charged_bar_abs, vessel.discharged_bar_abs)
+        )
+        parts.append(
+            f"a steam accumulator of {vessel.volume_m3:.0f} m³ "
+            f"between {charged:.1f} and {discharged:.1f} bar g"
+        )
+    return " with ".join([", ".join(parts[:-1]), parts[-1]]) if len(parts) > 1 else parts[0]
+
+
+def fuel_price_range(
+    case: Case, results: tuple[AlternativeResult, ...], best: AlternativeResult
+) -> tuple[float, float]:
+    """Fuel prices per MWh, on the case's basis, between which the planned `best` stays the cheapest plant.
+
+    Every plant as it is planned, so each cost is a line in the price.
+    """
+    basis = case.fuel.lhv_to_hhv if case.fuel_price_basis == "hhv" else 1.0
+    price = case.prices.fuel_per_j_lhv.amount * J_PER_MWH * basis
+    if price <= 0:
+        return 0.0, float("inf")
+    low, high = 0.0, float("inf")
+    own = _fuel_cost(best)
+    for other in results:
+        if other is best or other.net_present_cost is None or best.net_present_cost is None:
+            continue
+        slope = (_fuel_cost(other) - own) / price
+        lead = other.net_present_cost - best.net_present_cost
+        if slope > 0:
+            low = max(low, price - lead / slope)
+        elif slope < 0:
+            high = min(high, price + lead / -slope)
+    return low, high
+
+
+def _fuel_cost(result: AlternativeResult) -> float:
+    return sum(line.present_cost for line in result.cost_lines if line.name == "fuel")
+
+
+def verdict_words(case: Case, results: tuple[AlternativeResult, ...], best: AlternativeResult) -> str:
+    """The verdict."""
+    currency = case.finance.currency
+    cost = best.net_present_cost or 0.0
+    twins = [x.name for x in results if x is not best and _same_plant(x, best)]
+    same = f" (the same plant as '{twins[0]}')" if twins else ""
+    words = [
+        f"'{best.name}'{same} has the least net present cost: {cost:,.0f} {currency} over "
+        f"{case.finance.horizon_years} years with {plant_words(best)}"
+    ]
+    reference = next(x for x in results if x.name == case.plan.reference)
+    if reference is best:
+        words[0] += "; no planned change earns its cost."
+    else:
+        saving = best.net_present_saving or 0.0
+        words[0] += f", {saving:,.0f} {currency} less than '{reference.name}'."
+    rival = _nearest_rival(results, best, twins)
+    if rival is not None and rival.net_present_cost is not None:
+        margin = rival.net_present_cost - cost
+        words.append(f"The next one is '{rival.name}', {margin:,.0f} {currency} dearer")
+        if rival.bound is not None and rival.bound < cost:
+            words[-1] += "; the proven bounds do not exclude that it is the cheaper one"
+        words[-1] += "."
+    low, high = fuel_price_range(case, tuple(x for x in results if x.name not in twins), best)
+    words.append(_range_words(case, low, high))
+    return " ".join(words)
+
+
+def _range_words(case: Case, low: float, high: float) -> str:
+    unit = f"{case.finance.currency}/MWh ({'gross' if case.fuel_price_basis == 'hhv' else 'net'})"
+    plants = "with every plant as planned here"
+    if high == float("inf"):
+        return (
+            f"This order holds at any fuel price, {plants}."
+            if low <= 0
+            else f"It stays the cheapest at fuel prices above {low:,.0f} {unit}, {plants}."
+        )
+    if low <= 0:
+        return f"It stays the cheapest at fuel prices below {high:,.0f} {unit}, {plants}."
+    return f"It stays the cheapest at fuel prices from {low:,.0f} to {high:,.0f} {unit}, {plants}."
+
+
+def _same_plant(first: AlternativeResult, second: AlternativeResult) -> bool:
+    return (
+        first.planned
+        and second.planned
+        and [x.name for x in first.boilers] == [x.name for x in second.boilers]
+        and first.vessel == second.vessel
+    )
+
+
+def _nearest_rival(
+    results: tuple[AlternativeResult, ...], best: AlternativeResult, twins: list[str]
+) -> AlternativeResult | None:
+    rivals = [x for x in results if x is not best and x.name not in twins and x.net_present_cost is not None]
+    return min(rivals, key=lambda x: x.net_present_cost or 0.0) if rivals else None

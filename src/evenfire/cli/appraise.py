@@ -1,0 +1,110 @@
+"""``evenfire appraise``: progress while planning, then the table and the verdict."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from rich.console import Console
+from rich.progress import Progress as Bar
+from rich.progress import SpinnerColumn, TextColumn, TimeElapsedColumn
+from rich.table import Table
+
+from evenfire.appraisal.appraise import appraise
+from evenfire.appraisal.results import AlternativeResult, Appraisal, Standing
+from evenfire.case.load import load_case
+from evenfire.errors import ExitStatus
+from evenfire.plan.outcome import Progress
+from evenfire.report.folder import check_output_folder, write_appraisal
+
+
+def run(case_path: Path, out: Path | None, *, replace: bool, quiet: bool) -> ExitStatus:
+    """Appraise a case and write its folder; the exit status says how far the plans are proven."""
+    console = Console(quiet=quiet, highlight=False)
+    case = load_case(case_path)
+    folder = out if out is not None else case.folder / "appraisal"
+    check_output_folder(folder, replace)
+    console.print(f"{case.name}: {len(case.plan.alternatives)} alternatives")
+    with Bar(
+        SpinnerColumn(),
+        TextColumn("{task.description}"),
+        TimeElapsedColumn(),
+        console=console,
+        transient=True,
+    ) as bar:
+        task = bar.add_task("reading the record")
+
+        def watch(progress: Progress) -> None:
+            bar.update(task, description=_progress_words(progress))
+
+        result = appraise(case, watch)
+    write_appraisal(result, folder, replace)
+    console.print(_table(result))
+    console.print(result.verdict, soft_wrap=True)
+    for notice in result.notices:
+        if notice.severity == "warning":
+            console.print(f"Note: {notice.text}", soft_wrap=True)
+    console.print(
+        "Pressurised steam and hot water kill: these sizes are for an investment decision, not for construction.",
+        soft_wrap=True,
+    )
+    console.print(f"Written: {folder / 'report.html'}", soft_wrap=True)
+    return _status(result)
+
+
+def _status(result: Appraisal) -> ExitStatus:
+    if any(x.solver_status == "interrupted" for x in result.alternatives):
+        return ExitStatus.INTERRUPTED
+    if any(x.standing in (Standing.GAP_NOT_REACHED, Standing.NO_PLAN) for x in result.alternatives):
+        return ExitStatus.GAP_MISSED
+    return ExitStatus.DONE
+
+
+def _progress_words(progress: Progress) -> str:
+    words = f"planning '{progress.alternative}' ({progress.stage})"
+    if progress.bound_k is not None:
+        words += f": bound {progress.bound_k:,.0f} k"
+    if progress.cost_k is not None and progress.gap is not None:
+        words += f", best plan {progress.cost_k:,.0f} k, gap {100 * progress.gap:.2f} %"
+    return words
+
+
+def _table(result: Appraisal) -> Table:
+    """One column per alternative, so that five fit an ordinary terminal."""
+    currency = result.case.finance.currency
+    columns = [_column(x) for x in result.alternatives]
+    labels = (
+        "boilers, t/h",
+        "vessel, m³",
+        f"net present cost, 1000 {currency}",
+        f"investment, 1000 {currency}",
+        "fuel saved, MWh/a",
+        "burner starts per year",
+        "unmet steam, t/a",
+        "simple payback, years",
+        "proven gap, %",
+    )
+    table = Table(show_lines=False, pad_edge=False)
+    table.add_column("", no_wrap=True)
+    for alternative in result.alternatives:
+        words = "\n".join(alternative.name.split(" "))
+        table.add_column(f"{words} *" if alternative.name == result.best else words, justify="right")
+    for number, label in enumerate(labels):
+        table.add_row(label, *(column[number] for column in columns))
+    return table
+
+
+def _column(alternative: AlternativeResult) -> list[str]:
+    if alternative.net_present_cost is None:
+        return [alternative.standing.value, *[""] * 8]
+    payback = alternative.payback
+    return [
+        " + ".join(f"{boiler.rating_kg_h / 1000:g}" for boiler in alternative.boilers),
+        f"{alternative.vessel.volume_m3:.1f}" if alternative.vessel else "none",
+        f"{alternative.net_present_cost / 1000:,.0f}",
+        f"{alternative.investment / 1000:,.0f}",
+        f"{alternative.fuel_saved_mwh_per_year:,.0f}",
+        f"{alternative.burner_starts_per_year:,.0f}",
+        f"{alternative.unmet_steam_t_per_year:,.1f}",
+        payback.note if payback.simple_years is None else f"{payback.simple_years:.1f}",
+        "unknown" if alternative.gap is None else f"{100 * alternative.gap:.2f}",
+    ]
