@@ -6,13 +6,13 @@ import datetime as dt
 
 import numpy as np
 
-from evenfire.demand.series import FloatArray
+from evenfire.demand.series import FloatArray, Gap
 from evenfire.errors import Notice, Problem, RecordError
 
 
 def gaps_filled(
     flow: FloatArray, start: dt.datetime, step_s: float, rule: str, largest_gap_s: float, source: str
-) -> tuple[FloatArray, tuple[Notice, ...]]:
+) -> tuple[FloatArray, tuple[Notice, ...], tuple[Gap, ...]]:
     """Flow with its missing values (NaN) filled by a stated rule, and the notice that says so.
 
     Use it on a regular series. ``hold`` repeats the last value, ``interpolate`` joins the values on
@@ -36,7 +36,7 @@ def gaps_filled(
     Returns
     -------
     tuple
-        The filled flow, shape (steps,), and no or one notice.
+        The filled flow, shape (steps,); no or one notice; the gaps.
 
     Raises
     ------
@@ -46,15 +46,15 @@ def gaps_filled(
 
     Examples
     --------
-    >>> filled, notices = gaps_filled(
+    >>> filled, notices, gaps = gaps_filled(
     ...     np.array([1.0, np.nan, 3.0]), dt.datetime(2026, 2, 2), 60.0, "interpolate", 600.0, "steam.csv"
     ... )
-    >>> filled.tolist(), notices[0].code
-    ([1.0, 2.0, 3.0], 'R191')
+    >>> filled.tolist(), notices[0].code, gaps
+    ([1.0, 2.0, 3.0], 'R191', (Gap(first_step=1, last_step=1, rule='interpolate'),))
     """
     missing = np.isnan(flow)
     if not missing.any():
-        return flow, ()
+        return flow, (), ()
     edges = np.diff(np.concatenate([[0], missing.astype(np.int8), [0]]))
     first, after = np.flatnonzero(edges == 1), np.flatnonzero(edges == -1)
     length_s = (after - first) * step_s
@@ -88,4 +88,8 @@ def gaps_filled(
         f"{int(missing.sum())} of {flow.size} steps ({missing.mean():.2%}) were missing, in {found}; "
         f"filled with {words[rule]}."
     )
-    return filled, (Notice(code="R191", text=text, severity="assumed"),)
+    gaps = tuple(
+        Gap(first_step=int(one), last_step=int(end) - 1, rule=rule)
+        for one, end in zip(first, after, strict=True)
+    )
+    return filled, (Notice(code="R191", text=text, severity="assumed"),), gaps

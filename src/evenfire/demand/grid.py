@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from evenfire.demand.flows import Readings
 from evenfire.demand.local_time import hour_lost_or_gap
 from evenfire.demand.record_format import AMOUNT_KG, COUNTER_KG, RecordFormat
-from evenfire.demand.series import FloatArray
+from evenfire.demand.series import FloatArray, Gap
 from evenfire.demand.table import rows_named
 from evenfire.errors import Notice, Problem, RecordError
 from evenfire.units import SECONDS_PER_DAY
@@ -32,6 +32,8 @@ class Grid:
     flow_kg_s: FloatArray = field(repr=False)
     """NaN where missing, shape (steps,)."""
     notices: tuple[Notice, ...]
+    spread: tuple[Gap, ...] = ()
+    """Steps between counter readings further apart than a step."""
 
 
 def order_problems(stamps: StampArray, form: RecordFormat, source: str, lines: LineArray) -> list[Problem]:
@@ -94,14 +96,14 @@ def regular_grid(
     start = stamps[0]
     if form.flow_unit in COUNTER_KG:
         first = int(position[~readings.missing][0])
-        flow, notices = _counter_flow(position, readings, step_s, form, source)
+        flow, notices, spread = _counter_flow(position, readings, step_s, form, source)
         start = start + np.timedelta64(first * step_ns, "ns")
     else:
-        flow, notices = np.full(int(position[-1]) + 1, np.nan), ()
+        flow, notices, spread = np.full(int(position[-1]) + 1, np.nan), (), ()
         flow[position] = readings.values / (step_s if form.flow_unit in AMOUNT_KG else 1.0)
         if form.stamp == "end":
             start = start - np.timedelta64(step_ns, "ns")
-    return Grid(start=_moment(start), step_s=step_s, flow_kg_s=flow, notices=notices)
+    return Grid(start=_moment(start), step_s=step_s, flow_kg_s=flow, notices=notices, spread=spread)
 
 
 def averaged_grid(
@@ -164,18 +166,22 @@ def _at(edges: FloatArray, moments: FloatArray, added: FloatArray) -> FloatArray
 
 def _counter_flow(
     position: NDArray[np.int64], readings: Readings, step_s: float, form: RecordFormat, source: str
-) -> tuple[FloatArray, tuple[Notice, ...]]:
+) -> tuple[FloatArray, tuple[Notice, ...], tuple[Gap, ...]]:
     nodes = position[~readings.missing]
     steps = np.diff(nodes)
     flow = np.repeat(readings.values[~readings.missing][1:] / (steps * step_s), steps)
     spread = int((steps[steps > 1]).sum())
     if spread == 0:
-        return flow, ()
+        return flow, (), ()
     text = (
         f"{source}: {spread} of {flow.size} steps lie between counter readings further apart than a step "
         f"(longest {steps.max() * step_s:g} s); the steam between them is spread evenly."
     )
-    return flow, (Notice(code="R191", text=text, severity="assumed"),)
+    gaps = tuple(
+        Gap(first_step=int(nodes[at] - nodes[0]), last_step=int(nodes[at + 1] - nodes[0]) - 1, rule="spread")
+        for at in np.flatnonzero(steps > 1)
+    )
+    return flow, (Notice(code="R191", text=text, severity="assumed"),), gaps
 
 
 def _summer_time_problems(

@@ -77,7 +77,7 @@ def demand_record(path: Path, form: RecordFormat) -> DemandRecord:
     grid = grid_of(stamps, readings, form, source, table.lines)
     if problems := length_problem(grid, source):
         raise RecordError(*problems)
-    flow, gap_notices = gaps_filled(
+    flow, gap_notices, gaps = gaps_filled(
         grid.flow_kg_s, grid.start, grid.step_s, form.gaps, form.largest_gap_s, source
     )
     notices = (*table.notices, *stamp_notices, *readings.notices, *grid.notices, *gap_notices)
@@ -87,6 +87,7 @@ def demand_record(path: Path, form: RecordFormat) -> DemandRecord:
         flow_kg_s=flow,
         source=source,
         notices=notices + _length_notices(grid.start, flow.size * grid.step_s),
+        gaps=tuple(sorted((*grid.spread, *gaps), key=lambda gap: gap.first_step)),
     )
 
 

@@ -14,6 +14,17 @@ FloatArray = NDArray[np.float64]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class Gap:
+    """Steps of a record that no meter measured, and how they were filled."""
+
+    first_step: int
+    last_step: int
+    """Both ends included."""
+    rule: str
+    """``hold``, ``interpolate``, ``zero``, or ``spread`` for the known rise of a counter."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class DemandRecord:
     """Steam demand at the step at which it was logged, complete and regular."""
 
@@ -27,6 +38,8 @@ class DemandRecord:
     """Name of the file the record came from."""
     notices: tuple[Notice, ...] = ()
     """What was found and done on import (gaps filled, rows dropped), in numbers."""
+    gaps: tuple[Gap, ...] = field(default=(), repr=False)
+    """Every filled gap, in order of time."""
 
     @property
     def days(self) -> float:
