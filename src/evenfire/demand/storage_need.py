@@ -94,7 +94,7 @@ def storage_need(
     >>> [round(float(storage), 3) for storage in need.storage_kg]
     [6000.0, 0.0]
     """
-    flow = _checked_flow(flow_kg_s, step_s, lowest_capacity_kg_s)
+    flow = checked_flow(flow_kg_s, step_s, lowest_capacity_kg_s)
     lowest = float(flow.mean()) if lowest_capacity_kg_s is None else float(lowest_capacity_kg_s)
     peak = float(flow.max())
     tolerance = 1e-11 * peak
@@ -161,7 +161,7 @@ def storage_need_at(flow_kg_s: FloatArray, step_s: float, capacity_kg_s: float) 
     >>> piece.first_step, piece.last_step, piece.energy_kg - 3.0 * piece.duration_s
     (1, 2, 180.0)
     """
-    flow = _checked_flow(flow_kg_s, step_s, capacity_kg_s)
+    flow = checked_flow(flow_kg_s, step_s, capacity_kg_s)
     first, last = _worst_interval(flow, float(capacity_kg_s))
     return StorageNeedPiece(
         energy_kg=float(flow[first : last + 1].sum() * step_s),
@@ -246,14 +246,15 @@ def shortfall_kg(
     >>> shortfall_kg(np.array([1.0, 5.0, 4.0, 1.0]), 60.0, 3.0, 150.0, 10.0)
     30.0
     """
-    flow = _checked_flow(flow_kg_s, step_s, capacity_kg_s)
+    flow = checked_flow(flow_kg_s, step_s, capacity_kg_s)
     for name, value, unit in (("storage_kg", storage_kg, "kg"), ("release_kg_s", release_kg_s, "kg/s")):
         if not value >= 0.0:
             raise RecordError(_problem(name, f"found {value:g} {unit}", "must not be negative"))
     return float(_unmet(flow, step_s, float(capacity_kg_s), float(storage_kg), float(release_kg_s)))
 
 
-def _checked_flow(flow_kg_s: FloatArray, step_s: float, capacity_kg_s: float | None) -> FloatArray:
+def checked_flow(flow_kg_s: FloatArray, step_s: float, capacity_kg_s: float | None) -> FloatArray:
+    """Flow as a contiguous array, or every reason why it, the step or the capacity cannot be used (R120)."""
     flow = np.ascontiguousarray(flow_kg_s, dtype=np.float64)
     problems = []
     if flow.ndim != 1 or flow.size == 0:
