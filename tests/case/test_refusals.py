@@ -28,6 +28,22 @@ REFUSALS = [
         id="key of another section",
     ),
     pytest.param(
+        ("price_per_mwh = 46.0", "price_per_mwh = 46.0\nfan_and_pump_kwh_per_t_steam = 3.0"),
+        "case.toml: fuel.fan_and_pump_kwh_per_t_steam: unknown key; it belongs in [money] [C103]",
+        id="key of the money section",
+    ),
+    pytest.param(
+        ('gaps = "refuse"', 'gaps = "refuse"\ngood_status = "Good"'),
+        "case.toml: record.good_status: found 'Good'; must be a list of text [C105]",
+        id="text where a list belongs",
+    ),
+    pytest.param(
+        ("{ rating_kg_h = 4000, installed", "{ rating_kg_h = 4000, casing_loss_kw = 12.0, installed"),
+        "case.toml: new_boiler, sizes[1].casing_loss_kw: stated without stack_readings; state stack_readings, which it"
+        " belongs to, or leave it out [C131]",
+        id="casing loss of a size without readings",
+    ),
+    pytest.param(
         ("[plan]", "[plans]"),
         "case.toml: plans: unknown section; did you mean 'plan'? [C103]",
         id="misspelt section",
@@ -246,7 +262,7 @@ REFUSALS = [
     ),
     pytest.param(
         ('file = "steam.csv.gz"', 'file = "stem.csv"'),
-        "case.toml: record.file: found 'stem.csv', but there is no file stem.csv; name a CSV file beside the case"
+        "case.toml: record.file: found 'stem.csv', but there is no file stem.csv; name a file beside the case"
         " [C130]",
         id="record missing",
     ),

@@ -18,6 +18,7 @@ LOAD_ROUNDING_PERCENT = 0.05
 
 
 def boiler_problems(draft: Draft) -> Iterator[Problem]:
+    """What is wrong between keys of the boilers in place."""
     for name, times in Counter(boiler.name for boiler in draft.existing_boilers).items():
         if times > 1:
             yield Problem(
@@ -42,11 +43,15 @@ def boiler_problems(draft: Draft) -> Iterator[Problem]:
 
 
 def catalogue_problems(draft: Draft) -> Iterator[Problem]:
+    """What is wrong between keys of the boilers on offer."""
     catalogue = draft.new_boiler
     if catalogue is None:
         return
     place = f"{draft.file}: new_boiler,"
     yield from _type_problems(catalogue, place, draft)
+    for position, size in enumerate(catalogue.sizes):
+        if catalogue.stack_readings is None and size.casing_loss_kw is not None:
+            yield _needs_stack_readings(f"{place} sizes[{position}].casing_loss_kw")
     for rating, times in Counter(size.rating_kg_h for size in catalogue.sizes).items():
         if times > 1:
             yield Problem(
@@ -187,9 +192,13 @@ def _missing_stack_problems(boiler: BoilerType, place: str) -> Iterator[Problem]
         )
     for key in ("combustion_air_temperature_degc", "economiser", "casing_loss_kw"):
         if getattr(boiler, key, None) is not None:
-            yield Problem(
-                code="C131",
-                where=f"{place} {key}",
-                found="stated without stack_readings",
-                allowed="state stack_readings, which it belongs to, or leave it out",
-            )
+            yield _needs_stack_readings(f"{place} {key}")
+
+
+def _needs_stack_readings(where: str) -> Problem:
+    return Problem(
+        code="C131",
+        where=where,
+        found="stated without stack_readings",
+        allowed="state stack_readings, which it belongs to, or leave it out",
+    )

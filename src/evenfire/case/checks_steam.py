@@ -11,6 +11,7 @@ from evenfire.water import saturation_temperature_k
 
 
 def steam_problems(draft: Draft) -> Iterator[Problem]:
+    """What is wrong between the site's pressures and temperatures."""
     steam = draft.steam
     if steam is None:
         return

@@ -185,7 +185,9 @@ def _notices(written: CaseFile) -> Iterator[Notice]:
         yield assumption("fuel", "lhv_to_hhv", f"{published.lhv_to_hhv:.4f}", f"published for {fuel.kind}")
     if fuel.co2_kg_per_gj_lhv is None:
         co2 = f"{published.co2_kg_per_j_lhv * J_PER_GJ:.4g} kg/GJ"
-        yield assumption("fuel", "co2_kg_per_gj_lhv", co2, f"published for {fuel.kind}")
+        yield assumption(
+            "fuel", "co2_kg_per_gj_lhv", co2, _CO2_REASONS.get(fuel.kind, f"published for {fuel.kind}")
+        )
     if written.vessel is None:
         return
     if written.vessel.make_up_temperature_degc is None:
@@ -197,6 +199,12 @@ def _notices(written: CaseFile) -> Iterator[Notice]:
             code="C191",
             text=f"vessel: no window {', '.join(skipped)} bar g, as charged is not above discharged",
         )
+
+
+_CO2_REASONS = {
+    "electricity": "none at the site; state the grid's factor if it counts",
+    "wood": "fossil part of the fuel; its own carbon is counted apart",
+}
 
 
 def _places(written: CaseFile) -> Iterator[tuple[str, Section]]:

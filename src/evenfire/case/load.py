@@ -43,8 +43,9 @@ def load_case(path: str | Path, changes: Mapping[str, float] | None = None) -> C
     ------
     CaseError
         Every problem of the file at once: C101 no such file, C102 not TOML, C103 unknown key, C104 missing
-        key, C105 to C109 a value of the wrong kind, range, choice or form, C110 to C127 values that
-        contradict each other, C123 a path that does not exist, C130 no record file.
+        key, C105 to C109 a value of the wrong kind, range, choice or form, C110 to C135 values that
+        contradict each other, C123 a path that does not exist, C130 no record file; and R-codes where
+        [record] contradicts itself.
 
     Examples
     --------
@@ -147,7 +148,7 @@ def _record_file(draft: Draft, file: Path) -> tuple[Path, list[Problem]]:
             code="C130",
             where=f"{draft.file}: record.file",
             found=f"found '{draft.record.file}', but there is no file {record_file}",
-            allowed="name a CSV file beside the case",
+            allowed="name a file beside the case",
         )
     ]
 

@@ -53,9 +53,10 @@ def accepted(field: FieldInfo) -> str:
         return f"a list of {each}" if is_list(field.annotation) else each
     if section_of(field) is not None:
         return "a list of tables" if is_list(field.annotation) else "a table"
+    words = str in (field.annotation, *get_args(field.annotation))
     if is_list(field.annotation):
-        return "a list of numbers"
-    if str in (field.annotation, *get_args(field.annotation)):
+        return "a list of text" if words else "a list of numbers"
+    if words:
         return ", ".join(filter(None, ("text", form_of(field))))
     limits = _limits(field)
     whole = int in (field.annotation, *get_args(field.annotation))
@@ -150,10 +151,8 @@ def _unknown_key(
 
 
 def key_offer(key: str, known: tuple[str, ...], elsewhere: Mapping[str, tuple[str, ...]]) -> str:
-    """What to do about an unknown key: the nearest here, where it belongs, or all that is known."""
-    if offer := nearest(key, known):
-        return offer
-    homes = [name for name, keys in elsewhere.items() if key in keys]
+    """What to do about an unknown key: where it belongs, the nearest here, or all that is known."""
+    homes = [f"[{name}]" for name, keys in elsewhere.items() if key in keys]
     if homes:
-        return f"it belongs in [{homes[0]}]"
-    return f"known here: {', '.join(known)}"
+        return f"it belongs in {' or '.join(homes)}"
+    return nearest(key, known) or f"known here: {', '.join(known)}"

@@ -140,7 +140,7 @@ def _left_out(field: FieldInfo) -> str:
         return "must be stated"
     if assumption_of(field):
         return assumption_of(field)
-    if field.default is None or field.default == "":
+    if field.default in (None, "", ()):
         return "empty"
     return with_unit(field.default, unit_of(field))
 
