@@ -61,6 +61,11 @@ def test_everything_stated_reaches_the_format(write_example):
     )
 
 
+def test_tab_is_a_delimiter(write_example):
+    """White space in a text is kept: a tab between the columns stays a tab."""
+    assert load_case(write_example((UNIT, f'{UNIT}\ndelimiter = "\\t"'))).record_format.delimiter == "\t"
+
+
 def test_fuel_meter_in_si(write_example):
     """kJ/kg, percent and kWh/m3 arrive as J/kg, a fraction and J/m3."""
     meter = (

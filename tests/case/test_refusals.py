@@ -132,6 +132,11 @@ REFUSALS = [
         id="currency",
     ),
     pytest.param(
+        ('name = "Boiler 2, 2.5 t/h"', 'name = " "'),
+        "case.toml: existing_boiler[1].name: found ' '; must be text, not blank [C108]",
+        id="blank name",
+    ),
+    pytest.param(
         ("discharged_pressures_bar_g = [4.6, 5.2, 6.0]", "discharged_pressures_bar_g = []"),
         "case.toml: vessel.discharged_pressures_bar_g: empty; must hold at least one entry [C109]",
         id="no discharged pressure",

@@ -114,11 +114,12 @@ def case_file_page() -> str:
 
 
 def _rows_of(section: type[Section], above: str) -> Iterator[str]:
-    """The tables of the lists of rows inside a section."""
+    """The tables of what stands inside a section."""
     for name, field in section.model_fields.items():
         inside = section_of(field)
         if inside is not None:
-            yield f"### `{above}.{name}`, each row\n\n{_table(inside)}"
+            each = ", each row" if is_list(field.annotation) else ""
+            yield f"### `{above}.{name}`{each}\n\n{_table(inside)}"
 
 
 def _table(section: type[Section]) -> str:

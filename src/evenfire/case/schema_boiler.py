@@ -300,7 +300,9 @@ class RatedBoiler(Section):
 class ExistingBoiler(BoilerType, RatedBoiler):
     """A boiler that stands on the site."""
 
-    name: Annotated[str, entry("What the site calls it; unique in the case.", shortest=1)]
+    name: Annotated[
+        str, entry("What the site calls it; unique in the case.", pattern=r"\S", form="not blank")
+    ]
 
 
 class BoilerSize(RatedBoiler):

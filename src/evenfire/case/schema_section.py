@@ -16,7 +16,7 @@ LARGEST_PRICE_PER_MWH = 1.0e5
 class Section(BaseModel):
     """One table of a case file: unknown keys refused, no infinities, immutable once read."""
 
-    model_config = ConfigDict(extra="forbid", frozen=True, allow_inf_nan=False, str_strip_whitespace=True)
+    model_config = ConfigDict(extra="forbid", frozen=True, allow_inf_nan=False)
 
 
 def quantity(

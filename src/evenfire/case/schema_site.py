@@ -13,7 +13,9 @@ FuelKind = Literal["natural_gas", "gas_oil", "heavy_fuel_oil", "lpg", "wood", "e
 class Site(Section):
     """Which site, and the question asked."""
 
-    name: Annotated[str, entry("Name of the site, as it stands in the report.", shortest=1)]
+    name: Annotated[
+        str, entry("Name of the site, as it stands in the report.", pattern=r"\S", form="not blank")
+    ]
     question: Annotated[str, entry("The question in the reader's words; shown at the top of the report.")] = (
         ""
     )
