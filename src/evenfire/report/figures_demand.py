@@ -10,8 +10,8 @@ from matplotlib.axes import Axes
 from evenfire.appraisal.results import AlternativeResult, Appraisal
 from evenfire.demand.series import DemandRecord, FloatArray
 from evenfire.demand.statistics import load_duration_curve
-from evenfire.report.figures_paper import BLUE, FAINT, INK, LINES, SKY, VERMILION, Drawing, drawing, shown
-from evenfire.report.formats import digits, number
+from evenfire.report.figures_paper import BLUE, FAINT, INK, LINES, SKY, VERMILION, Drawing, drawing, label
+from evenfire.report.formats import number, short
 from evenfire.units import KG_PER_TONNE, SECONDS_PER_HOUR, kg_s_to_t_h
 
 BUCKETS = 700
@@ -41,8 +41,8 @@ def record_drawing(appraisal: Appraisal) -> Drawing:
     return drawing(
         "record",
         "Steam demand as recorded",
-        f"Demand over {number(record.days)} days lies between {digits(float(lowest.min()))} and "
-        f"{digits(float(highest.max()))} t/h; the boilers in place today can make {digits(today)} t/h.",
+        f"Demand over {number(record.days)} days lies between {short(float(lowest.min()))} and "
+        f"{short(float(highest.max()))} t/h; the boilers in place today can make {short(today)} t/h.",
         (2.7,),
         draw,
     )
@@ -72,10 +72,11 @@ def duration_drawing(appraisal: Appraisal) -> Drawing:
     return drawing(
         "duration",
         "Load duration curve",
-        f"Demand falls from a peak of {digits(float(flow_t_h[0]))} t/h to {digits(float(flow_t_h[-1]))} t/h; "
-        f"its mean is {digits(mean)} t/h.",
-        (2.5,),
+        f"Demand falls from a peak of {short(float(flow_t_h[0]))} t/h to {short(float(flow_t_h[-1]))} t/h; "
+        f"its mean is {short(mean)} t/h.",
+        (2.7,),
         draw,
+        width_inches=4.4,
     )
 
 
@@ -109,7 +110,7 @@ def storage_need_drawing(appraisal: Appraisal) -> Drawing:
                 clip_on=False,
                 zorder=5 + at,
                 linestyle="none",
-                label=shown(name),
+                label=label(name),
             )
         axes.text(
             left + 0.02 * (right - left),
@@ -125,11 +126,11 @@ def storage_need_drawing(appraisal: Appraisal) -> Drawing:
         axes.set_ylabel("steam from storage [t]")
         axes.legend(loc="upper right")
 
-    named = "; ".join(f"{name}: {digits(x)} t/h and {digits(y)} t" for name, x, y in points)
+    named = "; ".join(f"{name}: {short(x)} t/h and {short(y)} t" for name, x, y in points)
     return drawing(
         "storage-need",
         "Boiler capacity against the storage that the record needs",
-        f"Storage needed falls with boiler capacity and is nothing from {digits(float(capacity[-1]))} t/h "
+        f"Storage needed falls with boiler capacity and is nothing from {short(float(capacity[-1]))} t/h "
         f"on. Alternatives: {named}.",
         (3.2,),
         draw,

@@ -8,7 +8,7 @@ import numpy as np
 from matplotlib.axes import Axes
 
 from evenfire.appraisal.results import AlternativeResult, Appraisal
-from evenfire.report.figures_paper import FILLS, INK, Drawing, drawing, shown
+from evenfire.report.figures_paper import FILLS, INK, Drawing, drawing, label
 from evenfire.report.formats import thousands
 
 
@@ -30,7 +30,7 @@ def money_drawing(appraisal: Appraisal) -> Drawing:
         axes = panels[0]
         above, below = np.zeros(len(planned)), np.zeros(len(planned))
         for order, at in enumerate(shown_lines):
-            colour, hatch = FILLS[order % len(FILLS)]
+            colour, hatch, line = FILLS[order % len(FILLS)]
             start = np.where(amounts[at] >= 0.0, above, below)
             axes.barh(
                 places,
@@ -39,9 +39,9 @@ def money_drawing(appraisal: Appraisal) -> Drawing:
                 height=0.62,
                 color=colour,
                 hatch=hatch,
-                edgecolor="white",
+                edgecolor=line,
                 linewidth=0.6,
-                label=shown(names[at]),
+                label=label(names[at]),
             )
             above += np.maximum(amounts[at], 0.0)
             below += np.minimum(amounts[at], 0.0)
@@ -56,19 +56,19 @@ def money_drawing(appraisal: Appraisal) -> Drawing:
                 fontweight=bold,
             )
         axes.axvline(0.0, color=INK, linewidth=0.8)
-        axes.set_yticks(places, [shown(each.name) for each in planned])
+        axes.set_yticks(places, [label(each.name) for each in planned])
         axes.tick_params(axis="y", length=0)
         axes.grid(axis="y", visible=False)
         axes.set_xlim(right=1.1 * float(above.max(initial=1.0)))
         axes.xaxis.set_major_formatter(lambda value, _: f"{value:,.0f}".replace("-", "−"))
-        axes.set_xlabel(shown(f"net present cost [thousand {currency}]"))
+        axes.set_xlabel(f"net present cost [thousand {label(currency)}]")
         axes.legend(loc="lower left", bbox_to_anchor=(0.0, 1.0), ncols=4)
 
     totals = "; ".join(f"{each.name} {thousands(each.net_present_cost)}" for each in planned)
     return drawing(
         "money",
         "Where the money goes",
-        f"Net present cost in thousand {currency}: {totals}. The table of costs holds every line.",
+        f"Net present cost in thousand {currency}: {totals}. The tables of costs hold every line.",
         (1.1 + 0.42 * max(len(planned), 1) + 0.2 * (len(shown_lines) // 4),),
         draw,
     )

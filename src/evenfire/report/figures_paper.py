@@ -19,19 +19,19 @@ YELLOW, BLUE, VERMILION, PURPLE = "#F0E442", "#0072B2", "#D55E00", "#CC79A7"
 """The palette of Okabe and Ito, told apart with any common colour vision."""
 INK, FAINT, GRID = "#1c2b33", "#5b6b73", "#d5dcd8"
 
-FILLS: tuple[tuple[str, str], ...] = (
-    (BLUE, ""),
-    (SKY, "///"),
-    (ORANGE, ""),
-    (YELLOW, "|||"),
-    (PURPLE, "\\\\\\"),
-    ("#9aa5a8", ""),
-    (GREEN, "xxx"),
-    ("#d9dedb", "---"),
-    (VERMILION, "+++"),
-    ("#7d5a3c", "||"),
+FILLS: tuple[tuple[str, str, str], ...] = (
+    (BLUE, "", "#ffffff"),
+    (SKY, "///", "#ffffff"),
+    (ORANGE, "", "#ffffff"),
+    (YELLOW, "|||", "#8a8420"),
+    (PURPLE, "\\\\\\", "#ffffff"),
+    ("#8d999d", "", "#ffffff"),
+    (GREEN, "xxx", "#ffffff"),
+    ("#dfe3e0", "---", FAINT),
+    (VERMILION, "+++", "#ffffff"),
+    ("#7d5a3c", "||", "#ffffff"),
 )
-"""Colour and hatch of one kind of thing after another, so that grey print tells them apart too."""
+"""Colour, hatch and colour of the hatch of one thing after another; grey print tells them apart too."""
 LINES: tuple[tuple[str, str, str], ...] = (
     (BLACK, "o", "-"),
     (BLUE, "s", "--"),
@@ -44,6 +44,7 @@ LINES: tuple[tuple[str, str, str], ...] = (
 """Colour, marker and line style of one alternative after another."""
 
 WIDTH_INCHES = 7.6
+LONGEST_LABEL = 24
 SVG = "http://www.w3.org/2000/svg"
 XLINK = "http://www.w3.org/1999/xlink"
 NOT_IN_XML = re.compile("[^\t\n\r\x20-\ud7ff\ue000-\ufffd\U00010000-\U0010ffff]")
@@ -53,8 +54,11 @@ STYLE: dict[str, Any] = {
     "svg.fonttype": "none",
     "text.parse_math": False,
     "font.family": "sans-serif",
-    "font.sans-serif": ["DejaVu Sans", "Verdana", "Arial", "Helvetica"],
+    "font.sans-serif": ["DejaVu Sans"],
     "font.size": 9.0,
+    "figure.facecolor": "none",
+    "savefig.facecolor": "none",
+    "axes.facecolor": "none",
     "axes.edgecolor": FAINT,
     "axes.labelcolor": INK,
     "axes.linewidth": 0.7,
@@ -97,6 +101,7 @@ def drawing(
     description: str,
     heights_inches: Sequence[float],
     draw: Callable[[Sequence[Axes]], None],
+    width_inches: float = WIDTH_INCHES,
 ) -> Drawing:
     """A figure of panels one above the other, sharing their horizontal axis.
 
@@ -110,11 +115,13 @@ def drawing(
         Height of every panel, from the top [inch].
     draw
         Puts everything into the panels.
+    width_inches
+        Width [inch]; text keeps its size, so a narrow figure reads well beside a table.
     """
     style: Any = STYLE | {"svg.hashsalt": key}
     with rc_context(style), warnings.catch_warnings():
         warnings.filterwarnings("ignore", message=r"Glyph .* missing from font")
-        figure = Figure(figsize=(WIDTH_INCHES, sum(heights_inches)))
+        figure = Figure(figsize=(width_inches, sum(heights_inches)))
         panels = figure.subplots(
             len(heights_inches), 1, sharex=True, squeeze=False, height_ratios=list(heights_inches)
         )[:, 0]
@@ -123,6 +130,14 @@ def drawing(
         nothing = {"Date": None, "Creator": None, "Format": None, "Type": None}
         figure.savefig(raw, format="svg", metadata=nothing)
     return Drawing(title=title, description=description, svg=_inline(raw.getvalue(), key, title, description))
+
+
+def label(words: str) -> str:
+    """User text as a label of a figure: on one line, cut to a length that leaves room for the figure."""
+    line = " ".join(shown(words).split())
+    if line.startswith("_"):
+        line = f"\u200b{line}"  # a legend leaves out what starts with an underscore
+    return line if len(line) <= LONGEST_LABEL else f"{line[: LONGEST_LABEL - 1].rstrip()}…"
 
 
 def shown(words: str) -> str:

@@ -41,36 +41,56 @@ def plain(value: float) -> str:
     return text.replace("-", "−")
 
 
+def short(value: float, significant: int = 3) -> str:
+    """A number for running text: so many significant digits, no trailing zeros.
+
+    >>> short(7.5), short(11.8), short(0.3594), short(25200.0)
+    ('7.5', '11.8', '0.359', '25,200')
+    """
+    text = digits(value, significant)
+    return text.rstrip("0").rstrip(".") if "." in text else text
+
+
+def sentence(words: str) -> str:
+    """Words as a sentence: first letter large, full stop at the end.
+
+    >>> sentence("stopped after 30 s"), sentence("")
+    ('Stopped after 30 s.', '')
+    """
+    words = words.strip()
+    return words[:1].upper() + words[1:] + ("" if words.endswith((".", "!", "?")) or not words else ".")
+
+
 def percent(share: float | None, decimals: int = 1) -> str:
-    """A share as per cent.
+    r"""A share as per cent.
 
     >>> percent(0.0561), percent(None)
-    ('5.6 %', '–')
+    ('5.6\xa0%', '–')
     """
-    return MISSING if share is None else f"{number(100.0 * share, decimals)} %"
+    return MISSING if share is None else f"{number(100.0 * share, decimals)}\u00a0%"
 
 
 def signed_percent(share: float, decimals: int = 1) -> str:
-    """A relative error as per cent with its sign.
+    r"""A relative error as per cent with its sign.
 
     >>> signed_percent(0.0123), signed_percent(-0.2), signed_percent(0.0)
-    ('+1.2 %', '−20.0 %', '0.0 %')
+    ('+1.2\xa0%', '−20.0\xa0%', '0.0\xa0%')
     """
     text = percent(share, decimals)
     return f"+{text}" if round(100.0 * share, decimals) > 0.0 else text
 
 
 def gap_words(gap: float | None) -> str:
-    """A proven gap, never rounded down to nothing.
+    r"""A proven gap, never rounded down to nothing.
 
     >>> gap_words(0.00061), gap_words(0.000001), gap_words(0.0), gap_words(None)
-    ('0.06 %', 'below 0.01 %', '0 %', '–')
+    ('0.06\xa0%', 'below 0.01\xa0%', '0\xa0%', '–')
     """
     if gap is None:
         return MISSING
     if gap == 0.0:
-        return "0 %"
-    return "below 0.01 %" if gap < 1e-4 else percent(gap, 2)
+        return "0\u00a0%"
+    return "below 0.01\u00a0%" if gap < 1e-4 else percent(gap, 2)
 
 
 def thousands(amount: float | None) -> str:
@@ -85,9 +105,9 @@ def thousands(amount: float | None) -> str:
 
 
 def years(value: float) -> str:
-    """A time in years.
+    r"""A time in years.
 
-    >>> years(1.94), years(1.0)
-    ('1.9 years', '1.0 years')
+    >>> years(1.94)
+    '1.9\xa0years'
     """
-    return f"{number(value, 1)} years"
+    return f"{number(value, 1)}\u00a0years"

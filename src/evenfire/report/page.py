@@ -6,20 +6,20 @@ from dataclasses import dataclass
 
 from jinja2 import Environment, PackageLoader, StrictUndefined
 
-from evenfire.appraisal.results import AlternativeResult, Appraisal
+from evenfire.appraisal.results import AlternativeResult, Appraisal, Standing
 from evenfire.report.cautions import CAUTIONS
 from evenfire.report.figures_demand import duration_drawing, record_drawing, storage_need_drawing
-from evenfire.report.figures_dispatch import dispatch_drawing, shown_days
+from evenfire.report.figures_dispatch import dispatch_drawing, peak_drawing, shown_days
 from evenfire.report.figures_money import money_drawing
 from evenfire.report.figures_paper import Drawing
-from evenfire.report.formats import gap_words, thousands
+from evenfire.report.formats import gap_words, number, thousands
 from evenfire.report.notices import all_notices
 from evenfire.report.page_alternatives import (
-    STANDING_WORDS,
     cost_tables,
     gap_table,
     overview_table,
     payback_words,
+    standing_sentences,
 )
 from evenfire.report.page_equipment import boilers_table, vessel_table
 from evenfire.report.page_inputs import (
@@ -28,10 +28,10 @@ from evenfire.report.page_inputs import (
     inputs_table,
     notices_table,
     record_table,
-    storage_need_table,
     typical_days_errors,
     typical_days_table,
 )
+from evenfire.report.page_storage import storage_need_table
 from evenfire.report.page_table import Table
 from evenfire.report.tables import boiler_columns
 from evenfire.report.trade_units import FUEL_BASIS_WORDS, repeating_command
@@ -45,14 +45,13 @@ class Chapter:
 
     name: str
     standing: str
-    note: str
     best: bool
     tables: tuple[Table, ...]
     drawings: tuple[Drawing, ...]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
-class Figure:
+class KeyNumber:
     """One number beside the verdict."""
 
     words: str
@@ -81,10 +80,17 @@ def report_page(appraisal: Appraisal) -> str:
     return environment.get_template(TEMPLATE).render(
         appraisal=appraisal,
         finance=appraisal.case.finance,
+        record_days=number(appraisal.record.days),
+        program_version=dict(appraisal.versions).get("evenfire", ""),
         fuel_basis=FUEL_BASIS_WORDS[appraisal.fuel_basis],
         cautions=CAUTIONS,
-        figures=verdict_figures(appraisal),
+        key_numbers=key_numbers(appraisal),
         overview=overview_table(appraisal),
+        unplanned=tuple(
+            (each.name, standing_sentences(each))
+            for each in appraisal.alternatives
+            if each.standing is not Standing.PLANNED
+        ),
         warnings=tuple(each.text for each in notices if each.severity == "warning"),
         money=money_drawing(appraisal) if any(each.planned for each in appraisal.alternatives) else None,
         record=record_drawing(appraisal),
@@ -111,22 +117,22 @@ def report_page(appraisal: Appraisal) -> str:
     )
 
 
-def verdict_figures(appraisal: Appraisal) -> tuple[Figure, ...]:
+def key_numbers(appraisal: Appraisal) -> tuple[KeyNumber, ...]:
     """The few numbers of the best alternative that stand beside the verdict."""
     best = next((each for each in appraisal.alternatives if each.name == appraisal.best), None)
     if best is None or not best.planned:
         return ()
     money = f"thousand {appraisal.case.finance.currency}"
     return (
-        Figure(words="Net present cost", value=thousands(best.net_present_cost), unit=money),
-        Figure(
+        KeyNumber(words="net present cost", value=thousands(best.net_present_cost), unit=money),
+        KeyNumber(
             words=f"saved against “{appraisal.reference}”",
             value=thousands(best.net_present_saving),
             unit=money,
         ),
-        Figure(words="investment", value=thousands(best.investment), unit=money),
-        Figure(words="simple payback", value=payback_words(best.payback), unit=""),
-        Figure(words="proven gap", value=gap_words(best.gap), unit=""),
+        KeyNumber(words="investment", value=thousands(best.investment), unit=money),
+        KeyNumber(words="simple payback", value=payback_words(best.payback), unit=""),
+        KeyNumber(words="proven gap", value=gap_words(best.gap), unit=""),
     )
 
 
@@ -135,17 +141,22 @@ def _chapters(appraisal: Appraisal) -> tuple[Chapter, ...]:
     return tuple(
         Chapter(
             name=each.name,
-            standing=STANDING_WORDS[each.standing],
-            note=each.note,
+            standing=standing_sentences(each),
             best=each.name == appraisal.best,
             tables=_equipment(each),
-            drawings=tuple(
-                dispatch_drawing(f"dispatch-{at}-{number}", each, day, boilers)
-                for number, day in enumerate(shown_days(each), start=1)
-            ),
+            drawings=_dispatch(f"dispatch-{at}", each, boilers),
         )
         for at, each in enumerate(appraisal.alternatives, start=1)
     )
+
+
+def _dispatch(key: str, result: AlternativeResult, boilers: tuple[str, ...]) -> tuple[Drawing, ...]:
+    days = shown_days(result)
+    whole = tuple(
+        dispatch_drawing(f"{key}-{count}", result, day, boilers) for count, day in enumerate(days, start=1)
+    )
+    close = tuple(peak_drawing(f"{key}-peak", result, day, boilers) for day in days[-1:])
+    return whole + close
 
 
 def _equipment(result: AlternativeResult) -> tuple[Table, ...]:

@@ -6,15 +6,23 @@ from collections.abc import Callable
 
 from evenfire.appraisal.results import AlternativeResult, Appraisal, Payback, Standing, VesselChoice
 from evenfire.report.figures_money import cost_line_names
-from evenfire.report.formats import MISSING, digits, gap_words, number, percent, thousands
+from evenfire.report.formats import MISSING, digits, gap_words, number, percent, sentence, thousands, years
 from evenfire.report.page_table import Group, Table, plain_table
-from evenfire.report.trade_units import bar_g
+from evenfire.report.trade_units import gauge
 
 STANDING_WORDS = {
-    Standing.PLANNED: "planned, within the asked gap",
-    Standing.GAP_NOT_REACHED: "planned, but stopped before the asked gap",
-    Standing.INFEASIBLE: "not possible: no plant of this kind meets the case",
-    Standing.NO_PLAN: "no plan found before the time limit",
+    Standing.PLANNED: "planned",
+    Standing.GAP_NOT_REACHED: "planned, gap not reached",
+    Standing.INFEASIBLE: "not possible",
+    Standing.NO_PLAN: "no plan found",
+}
+"""The result of an alternative in the fewest words."""
+STANDING_SENTENCES = {
+    Standing.PLANNED: "The plan is within the asked gap.",
+    Standing.GAP_NOT_REACHED: "The plan can be built and run, but the search stopped before the asked gap: "
+    "a cheaper plan of this kind may exist, by at most the gap shown.",
+    Standing.INFEASIBLE: "No plant of this kind can do what the case asks.",
+    Standing.NO_PLAN: "The search stopped before it found any plan; this does not mean that there is none.",
 }
 BASIS_WORD = {"lhv": "net", "hhv": "gross"}
 
@@ -24,7 +32,7 @@ Cell = Callable[[AlternativeResult], str]
 def overview_table(appraisal: Appraisal) -> Table:
     """The main table: one column per alternative, the best one set off."""
     finance = appraisal.case.finance
-    money = f"thousand {finance.currency}"
+    money = f"thousand\u00a0{finance.currency}"
     basis = BASIS_WORD[appraisal.fuel_basis]
     against = f"against “{appraisal.reference}”"
     return Table(
@@ -66,8 +74,10 @@ def overview_table(appraisal: Appraisal) -> Table:
             Group(
                 title="A year of operation",
                 rows=(
-                    _row(f"Fuel [MWh/a, {basis}]", appraisal, lambda each: number(each.fuel_mwh_per_year)),
-                    _row(f"Fuel saved [MWh/a, {basis}]", appraisal, _fuel_saved),
+                    _row(
+                        f"Fuel [MWh/a,\u00a0{basis}]", appraisal, lambda each: number(each.fuel_mwh_per_year)
+                    ),
+                    _row(f"Fuel saved [MWh/a,\u00a0{basis}]", appraisal, _fuel_saved),
                     _row("CO2 saved [t/a]", appraisal, lambda each: number(each.co2_saved_t_per_year)),
                     _row("Burner starts [1/a]", appraisal, lambda each: number(each.burner_starts_per_year)),
                     _row("Unmet steam [t/a]", appraisal, lambda each: number(each.unmet_steam_t_per_year, 1)),
@@ -125,12 +135,12 @@ def cost_tables(appraisal: Appraisal) -> tuple[Table, Table]:
         present.append((name, *(number(sum(line.present_cost for line in found)) for found in lines)))
         if any(line.per_year for found in lines for line in found):
             yearly.append((name, *(number(sum(line.per_year for line in found)) for found in lines)))
-    total = ("Net present cost", *(number(each.net_present_cost) for each in planned))
+    total = ("net present cost", *(number(each.net_present_cost) for each in planned))
     return (
         Table(
             caption=f"Present cost over {finance.horizon_years} years [{finance.currency}].",
             head=head,
-            groups=(Group(rows=tuple(present)), Group(rows=(total,))),
+            groups=(Group(rows=tuple(present)), Group(rows=(total,), total=True)),
         ),
         plain_table(
             f"Cost of one year at prices of {finance.price_date} [{finance.currency}/a].", head, tuple(yearly)
@@ -143,26 +153,22 @@ def vessel_words(vessel: VesselChoice | None) -> str:
     if vessel is None:
         return "none"
     return (
-        f"{digits(vessel.volume_m3)} m³\n"
-        f"{digits(bar_g(vessel.charged_bar_abs))} to {digits(bar_g(vessel.discharged_bar_abs))} bar g\n"
-        f"gives {number(vessel.steam_capacity_kg)} kg"
+        f"{digits(vessel.volume_m3)}\u00a0m³\n"
+        f"{gauge(vessel.charged_bar_abs)} to {gauge(vessel.discharged_bar_abs)}\u00a0bar\u00a0g\n"
+        f"gives {number(vessel.steam_capacity_kg)}\u00a0kg"
     )
 
 
 def payback_words(payback: Payback) -> str:
     """Simple payback in years, or why there is none."""
-    return (
-        payback.note or MISSING
-        if payback.simple_years is None
-        else f"{number(payback.simple_years, 1)} years"
-    )
+    return payback.note or MISSING if payback.simple_years is None else years(payback.simple_years)
 
 
 def discounted_words(payback: Payback) -> str:
     """Discounted payback in years, or why there is none."""
     if payback.discounted_years is None:
         return payback.note or MISSING
-    return f"{number(payback.discounted_years, 1)} years"
+    return years(payback.discounted_years)
 
 
 def _row(label: str, appraisal: Appraisal, cell: Cell, always: bool = False) -> tuple[str, ...]:
@@ -177,9 +183,13 @@ def _column_of(appraisal: Appraisal, name: str) -> int | None:
     return names.index(name) + 1 if name in names else None
 
 
+def standing_sentences(result: AlternativeResult) -> str:
+    """What the result of an alternative is, in whole sentences, with its own note."""
+    return f"{STANDING_SENTENCES[result.standing]} {sentence(result.note)}".strip()
+
+
 def _standing(result: AlternativeResult) -> str:
-    words = STANDING_WORDS[result.standing]
-    return f"{words}\n{result.note}" if result.note else words
+    return STANDING_WORDS[result.standing]
 
 
 def _boilers(result: AlternativeResult) -> str:
@@ -190,7 +200,7 @@ def _boilers(result: AlternativeResult) -> str:
 
 
 def _boiler_pressure(result: AlternativeResult) -> str:
-    return digits(bar_g(result.boiler_working_bar_abs))
+    return gauge(result.boiler_working_bar_abs)
 
 
 def _fuel_saved(result: AlternativeResult) -> str:

@@ -5,14 +5,14 @@ from __future__ import annotations
 from evenfire.appraisal.results import AlternativeResult, VesselChoice
 from evenfire.report.formats import digits, number
 from evenfire.report.page_table import Table, plain_table
-from evenfire.report.trade_units import bar_g
+from evenfire.report.trade_units import gauge
 
 
 def boilers_table(result: AlternativeResult) -> Table:
     """Boilers of a plan and what each does in a year."""
     return plain_table(
-        f"Boilers, working at {digits(bar_g(result.boiler_working_bar_abs))} bar g "
-        f"({digits(result.boiler_working_bar_abs)} bar abs).",
+        f"Boilers, working at {gauge(result.boiler_working_bar_abs)} bar g "
+        f"({number(result.boiler_working_bar_abs, 1)} bar abs).",
         ("Boiler", "Rating [kg/h]", "", "Steam [t/a]", "Firing [h/a]", "Burner starts [1/a]"),
         tuple(
             (
@@ -36,10 +36,10 @@ def vessel_table(vessel: VesselChoice) -> Table:
         ("", "", ""),
         (
             ("Volume", digits(vessel.volume_m3), "m³"),
-            ("Charged pressure", digits(bar_g(vessel.charged_bar_abs)), _bar_words(vessel.charged_bar_abs)),
+            ("Charged pressure", gauge(vessel.charged_bar_abs), _bar_words(vessel.charged_bar_abs)),
             (
                 "Discharged pressure",
-                digits(bar_g(vessel.discharged_bar_abs)),
+                gauge(vessel.discharged_bar_abs),
                 _bar_words(vessel.discharged_bar_abs),
             ),
             ("Steam capacity, charged to discharged", number(vessel.steam_capacity_kg), "kg"),
@@ -55,4 +55,4 @@ def vessel_table(vessel: VesselChoice) -> Table:
 
 
 def _bar_words(pressure_bar_abs: float) -> str:
-    return f"bar g ({digits(pressure_bar_abs)} bar abs)"
+    return f"bar g ({number(pressure_bar_abs, 1)} bar abs)"

@@ -8,7 +8,7 @@ from evenfire.errors import Notice
 from evenfire.report.formats import digits, number, percent, plain, signed_percent
 from evenfire.report.page_table import Group, Table, plain_table
 from evenfire.report.trade_units import SECONDS_PER_MINUTE, Quantity, boiler_quantities, input_sections
-from evenfire.units import KG_PER_TONNE, SECONDS_PER_HOUR, kg_s_to_t_h
+from evenfire.units import KG_PER_TONNE, kg_s_to_t_h
 
 SECTION_TITLES = {
     "steam": "Steam",
@@ -29,7 +29,7 @@ def record_table(appraisal: Appraisal) -> Table:
         ("", "", ""),
         (
             ("File", record.source, ""),
-            ("First step", f"{record.start:%Y-%m-%d %H:%M}", "local time"),
+            ("First step, local time", f"{record.start:%Y-%m-%d\u00a0%H:%M}", ""),
             ("Length", number(found.days, 1), "days"),
             ("Step", plain(record.step_s / SECONDS_PER_MINUTE), "min"),
             ("Steam", number(found.steam_kg / KG_PER_TONNE), "t"),
@@ -40,28 +40,10 @@ def record_table(appraisal: Appraisal) -> Table:
             (
                 "Steepest rise from step to step",
                 digits(kg_s_to_t_h(found.steepest_rise_kg_s2) * SECONDS_PER_MINUTE),
-                "t/h per min",
+                "t/h\u00a0per\u00a0min",
             ),
         ),
         word_columns=(2,),
-    )
-
-
-def storage_need_table(appraisal: Appraisal) -> Table:
-    """The stretches of the record that decide how much storage a boiler capacity needs."""
-    need = appraisal.storage_need
-    return plain_table(
-        "Stretches of the record that decide the storage need.",
-        ("Boilers of [t/h]", "need storage of [t]", "for a stretch of [h]", "that begins after [days]"),
-        tuple(
-            (
-                digits(kg_s_to_t_h(float(need.capacity_kg_s[at]))),
-                digits(float(need.storage_kg[at]) / KG_PER_TONNE),
-                digits(piece.duration_s / SECONDS_PER_HOUR),
-                number(piece.first_step * appraisal.record.step_s / 86_400.0, 2),
-            )
-            for at, piece in enumerate(need.pieces)
-        ),
     )
 
 

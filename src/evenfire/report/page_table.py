@@ -12,6 +12,8 @@ class Group:
     title: str = ""
     rows: tuple[tuple[str, ...], ...]
     """The first cell of a row names it."""
+    total: bool = False
+    """Whether the rows are sums of those above."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from evenfire.appraisal.results import Appraisal
 from evenfire.case.case import BoilerOffer, Case
 from evenfire.money.terms import Price
+from evenfire.report.formats import number
 from evenfire.units import (
     J_PER_KWH,
     J_PER_MWH,
@@ -80,6 +81,15 @@ def boiler_quantities(offer: BoilerOffer) -> tuple[Quantity, ...]:
         ),
         Quantity(key="installed_cost", words="Installed cost", value=investment, unit="money"),
     )
+
+
+def gauge(pressure_bar_abs: float) -> str:
+    """A pressure [bar abs] as gauges show it [bar g], to a tenth.
+
+    >>> gauge(9.51325)
+    '8.5'
+    """
+    return number(bar_g(pressure_bar_abs), 1)
 
 
 def bar_g(pressure_bar_abs: float) -> float:
