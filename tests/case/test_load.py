@@ -39,7 +39,7 @@ def test_steam_conditions_are_absolute_and_in_kelvin(cannery):
 
 
 def test_gross_fuel_price_becomes_dearer_per_net_joule(cannery):
-    """46 per gross MWh is 46 / 0.90260 per net MWh (UK conversion factors 2023, checks F6)."""
+    """46 per gross MWh is 46 / 0.90260 per net MWh (UK conversion factors 2023; F6)."""
     per_net_mwh = cannery.prices.fuel_per_j_lhv.amount * 3.6e9
     assert per_net_mwh == pytest.approx(46.0 / 0.90260, rel=1e-5)
     assert cannery.prices.fuel_per_j_lhv.escalation == pytest.approx(0.01)
@@ -108,7 +108,7 @@ def test_from_and_at_rating_is_converted(dyehouse):
 
 
 def test_gross_efficiencies_are_converted_to_net(dyehouse):
-    """79.0 % on gross is 79.0 / 0.90260 = 87.52 % on net calorific value (checks F13)."""
+    """79.0 % on gross is 79.0 / 0.90260 = 87.52 % on net calorific value (UK conversion factors 2023; F13)."""
     points = dyehouse.boilers[0].spec.efficiency_points
     assert points[-1].efficiency_lhv == pytest.approx(0.790 / 0.90260, rel=1e-5)
 

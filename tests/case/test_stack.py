@@ -23,7 +23,7 @@ def stack(casing: float = 0.0, low: float = 230.0, gas: str = "o2_percent = 3.0"
 
 
 def test_siegert_alone_without_casing_loss(write_example):
-    """Natural gas, 230 degC against 20 degC, 3 % O2: stack loss 9.590 % (checks B4), so 90.410 % remain."""
+    """Natural gas, 230 degC against 20 degC, 3 % O2: stack loss 9.590 % (Siegert, German 1. BImSchV Annex 2; B4), so 90.410 % remain."""
     spec = load_case(write_example((POINTS, stack()))).boilers[0].spec
     assert [point.efficiency_lhv for point in spec.efficiency_points] == pytest.approx(
         [0.90410, 0.90410], abs=5e-6
@@ -31,13 +31,13 @@ def test_siegert_alone_without_casing_loss(write_example):
 
 
 def test_more_air_costs_efficiency(write_example):
-    """The same stack with 5 % O2 loses 10.5525 % (checks B6)."""
+    """The same stack with 5 % O2 loses 10.5525 % (same source; B6)."""
     spec = load_case(write_example((POINTS, stack(gas="o2_percent = 5.0")))).boilers[0].spec
     assert spec.efficiency_points[0].efficiency_lhv == pytest.approx(1.0 - 0.105525, abs=5e-7)
 
 
 def test_carbon_dioxide_serves_as_well_as_oxygen(write_example):
-    """10 % CO2 in the CO2 form of the formula: (230 - 20) (0.37 / 10 + 0.009) = 9.66 % (checks B4)."""
+    """10 % CO2 in the CO2 form of the formula: (230 - 20) (0.37 / 10 + 0.009) = 9.66 % (Siegert, German 1. BImSchV Annex 2; B4)."""
     spec = load_case(write_example((POINTS, stack(gas="co2_percent = 10.0")))).boilers[0].spec
     assert spec.efficiency_points[0].efficiency_lhv == pytest.approx(1.0 - 0.0966, abs=1e-9)
 
@@ -50,7 +50,7 @@ def test_casing_loss_weighs_four_times_at_quarter_load(write_example):
 
 
 def test_economiser_cools_the_stack(write_example):
-    """Cooling 230 degC to 130 degC at 3 % O2 leaves 5.0233 % (checks B5): 100 of 210 K."""
+    """Cooling 230 degC to 130 degC at 3 % O2 leaves 5.0233 % (same source; B5): 100 of 210 K."""
     economiser = "\neconomiser = { effectiveness_percent = 47.619047619, water_temperature_degc = 20.0 }"
     spec = load_case(write_example((POINTS, stack(more=economiser)))).boilers[0].spec
     assert spec.efficiency_points[-1].efficiency_lhv == pytest.approx(1.0 - 0.050233, abs=1e-6)
@@ -78,7 +78,7 @@ def test_typed_efficiencies_stand_where_the_stack_allows_them(write_example):
 def test_what_the_stack_needs_and_the_case_leaves_out_is_assumed_aloud(write_example):
     """Air temperature, casing loss and economiser water are told where they were not stated.
 
-    The casing loss is 0.0113 Q^0.7 MW (checks B14) of 4 t/h x 2332 kJ/kg = 2.59 MW, so 22.0 kW.
+    The casing loss is 0.0113 Q^0.7 MW (EN 12953-11; B14) of 4 t/h x 2332 kJ/kg = 2.59 MW, so 22.0 kW.
     """
     readings = stack(more="\neconomiser = { effectiveness_percent = 50.0 }")
     readings = readings[readings.index("stack_readings") :]
