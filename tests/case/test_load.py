@@ -108,7 +108,7 @@ def test_from_and_at_rating_is_converted(dyehouse):
 
 
 def test_gross_efficiencies_are_converted_to_net(dyehouse):
-    """79.0 % on gross is 79.0 / 0.90260 = 87.52 % on net calorific value (UK conversion factors 2023; F13)."""
+    """79.0 % on gross is 79.0 / 0.90260 = 87.52 % on net (UK conversion factors 2023; F13)."""
     points = dyehouse.boilers[0].spec.efficiency_points
     assert points[-1].efficiency_lhv == pytest.approx(0.790 / 0.90260, rel=1e-5)
 

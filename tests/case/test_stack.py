@@ -23,7 +23,10 @@ def stack(casing: float = 0.0, low: float = 230.0, gas: str = "o2_percent = 3.0"
 
 
 def test_siegert_alone_without_casing_loss(write_example):
-    """Natural gas, 230 degC against 20 degC, 3 % O2: stack loss 9.590 % (Siegert, German 1. BImSchV Annex 2; B4), so 90.410 % remain."""
+    """Natural gas, 230 degC against 20 degC, 3 % O2: a stack loss of 9.590 % leaves 90.410 %.
+
+    Siegert formula with the coefficients of German 1. BImSchV, Annex 2 (B4).
+    """
     spec = load_case(write_example((POINTS, stack()))).boilers[0].spec
     assert [point.efficiency_lhv for point in spec.efficiency_points] == pytest.approx(
         [0.90410, 0.90410], abs=5e-6
@@ -37,7 +40,7 @@ def test_more_air_costs_efficiency(write_example):
 
 
 def test_carbon_dioxide_serves_as_well_as_oxygen(write_example):
-    """10 % CO2 in the CO2 form of the formula: (230 - 20) (0.37 / 10 + 0.009) = 9.66 % (Siegert, German 1. BImSchV Annex 2; B4)."""
+    """10 % CO2 in the CO2 form of the formula: (230 - 20) (0.37 / 10 + 0.009) = 9.66 % (same source; B4)."""
     spec = load_case(write_example((POINTS, stack(gas="co2_percent = 10.0")))).boilers[0].spec
     assert spec.efficiency_points[0].efficiency_lhv == pytest.approx(1.0 - 0.0966, abs=1e-9)
 
