@@ -109,7 +109,7 @@ def saturation_pressure_pa(temperature_k: npt.ArrayLike) -> FloatArray:
         SMALLEST_TEMPERATURE_K,
         LARGEST_SATURATION_TEMPERATURE_K,
     )
-    return _finite(PropsSI("P", "T", temperature, "Q", 0.0, _FLUID), temperature, "temperature [K]")
+    return _property("P", "T", temperature, "Q", np.zeros_like(temperature))
 
 
 def liquid_enthalpy_j_kg(temperature_k: npt.ArrayLike, pressure_pa: npt.ArrayLike) -> FloatArray:
@@ -164,10 +164,8 @@ def liquid_enthalpy_j_kg(temperature_k: npt.ArrayLike, pressure_pa: npt.ArrayLik
             )
         )
     at_boiling = boiling - temperature < 1.0e-6
-    liquid = PropsSI("H", "T", np.where(at_boiling, boiling - 1.0e-6, temperature), "P", pressure, _FLUID)
-    return _finite(
-        np.where(at_boiling, _by_quality("H", pressure, 0.0), liquid), temperature, "temperature [K]"
-    )
+    liquid = _property("H", "T", np.where(at_boiling, boiling - 1.0e-6, temperature), "P", pressure)
+    return np.where(at_boiling, _by_quality("H", pressure, 0.0), liquid)
 
 
 def flash_steam_kg_m3(
@@ -231,7 +229,7 @@ def flash_steam_kg_m3(
 
 
 def _by_quality(output: str, pressure_pa: FloatArray, quality: float) -> FloatArray:
-    return _finite(PropsSI(output, "P", pressure_pa, "Q", quality, _FLUID), pressure_pa, "pressure [Pa]")
+    return _property(output, "P", pressure_pa, "Q", np.full_like(pressure_pa, quality))
 
 
 def _checked(values: npt.ArrayLike, code: str, name: str, unit: str, low: float, high: float) -> FloatArray:
@@ -243,16 +241,16 @@ def _checked(values: npt.ArrayLike, code: str, name: str, unit: str, low: float,
     return array
 
 
-def _finite(values: npt.ArrayLike, given: FloatArray, name: str) -> FloatArray:
-    array = np.asarray(values, dtype=np.float64)
-    if not np.isfinite(array).all():
-        bad = float(np.asarray(given)[~np.isfinite(array)].flat[0]) if array.ndim else float(given)
+def _property(output: str, first: str, given: FloatArray, second: str, other: FloatArray) -> FloatArray:
+    values = np.asarray(PropsSI(output, first, given.ravel(), second, other.ravel(), _FLUID))
+    lost = ~np.isfinite(values)
+    if lost.any():
         raise OutOfRangeError(
             Problem(
                 code="P104",
-                where=name,
-                found=f"the property library gives no finite value at {bad:g}",
+                where=f"IF97 {output} of {first} and {second}",
+                found=f"the property library gives no finite value at {given.flat[lost][0]:g}",
                 allowed="stay clear of the edges of the IF97 ranges",
             )
         )
-    return array
+    return values.reshape(given.shape)

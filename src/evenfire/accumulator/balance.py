@@ -122,7 +122,7 @@ def next_state(
     make_up_enthalpy_j_kg: float,
     drain_kg_s: float,
     step_s: float,
-) -> tuple[float, float, float, float, float]:
+) -> tuple[float, float, float, float, float, float]:
     """State after one step of constant flows, by the midpoint rule.
 
     dm/dt = charge + make-up - discharge - drain;
@@ -141,8 +141,8 @@ def next_state(
     -------
     mass_kg, energy_j, pressure_pa : float
         State at the end; the pressure is NaN if it is not two-phase or leaves the table.
-    discharge_j, loss_j : float
-        Energy carried off by the discharged steam and through the wall in this step [J].
+    discharge_j, drain_j, loss_j : float
+        Energy that left with the steam, with drained water and through the wall in this step [J].
     """
     mass_rate = charge_kg_s + make_up_kg_s - discharge_kg_s - drain_kg_s
     gain_w = charge_kg_s * charge_enthalpy_j_kg + make_up_kg_s * make_up_enthalpy_j_kg
@@ -160,7 +160,7 @@ def next_state(
         pressure_pa,
     )
     if math.isnan(middle):
-        return mass_kg, energy_j, math.nan, 0.0, 0.0
+        return mass_kg, energy_j, math.nan, 0.0, 0.0, 0.0
 
     x = math.log(middle)
     out_w = discharge_kg_s * spline_value(grid, coefficients, ENTHALPY_VAPOUR, x)
@@ -169,7 +169,7 @@ def next_state(
     mass_kg += step_s * mass_rate
     energy_j += step_s * (gain_w - out_w - drain_w - loss_w)
     pressure_pa = pressure_of(grid, coefficients, volume_m3, mass_kg, energy_j, middle)
-    return mass_kg, energy_j, pressure_pa, out_w * step_s, loss_w * step_s
+    return mass_kg, energy_j, pressure_pa, out_w * step_s, drain_w * step_s, loss_w * step_s
 
 
 @njit(cache=True)  # type: ignore[untyped-decorator]  # numba has no types

@@ -51,6 +51,8 @@ class AccumulatorRun:
     """Drained boiling water per step [kg]."""
     discharge_j: FloatArray
     """Energy of the discharged steam per step [J]."""
+    drain_j: FloatArray
+    """Energy of the drained water per step [J]."""
     loss_j: FloatArray
     """Heat lost through the wall per step [J]."""
 
@@ -234,7 +236,8 @@ class SteamAccumulator:
             make_up_kg=flows[0],
             drain_kg=flows[1],
             discharge_j=flows[2],
-            loss_j=flows[3],
+            drain_j=flows[3],
+            loss_j=flows[4],
         )
 
 
@@ -267,7 +270,7 @@ def _run(
 ) -> tuple[FloatArray, FloatArray, int]:
     steps = len(charge_kg_s)
     states = np.empty((4, steps + 1))
-    flows = np.zeros((4, steps))
+    flows = np.zeros((5, steps))
     pressure_pa = pressure_of(grid, coefficients, volume_m3, mass_kg, energy_j, pressure_pa)
     states[0, 0], states[1, 0], states[2, 0] = pressure_pa, mass_kg, energy_j
     states[3, 0] = liquid_fill_of(grid, coefficients, volume_m3, mass_kg, pressure_pa)
@@ -275,7 +278,7 @@ def _run(
         lacking = inventory_difference_kg(inventory_pressure_pa, inventory_kg, pressure_pa, mass_kg)
         correction_kg_s = lacking / max(level_control_s, step_s)
         make_up_kg_s, drain_kg_s = max(correction_kg_s, 0.0), max(-correction_kg_s, 0.0)
-        mass_kg, energy_j, pressure_pa, out_j, loss_j = next_state(
+        mass_kg, energy_j, pressure_pa, discharge_j, drain_j, loss_j = next_state(
             grid,
             coefficients,
             volume_m3,
@@ -297,5 +300,5 @@ def _run(
         states[0, step + 1], states[1, step + 1], states[2, step + 1] = pressure_pa, mass_kg, energy_j
         states[3, step + 1] = liquid_fill_of(grid, coefficients, volume_m3, mass_kg, pressure_pa)
         flows[0, step], flows[1, step] = make_up_kg_s * step_s, drain_kg_s * step_s
-        flows[2, step], flows[3, step] = out_j, loss_j
+        flows[2, step], flows[3, step], flows[4, step] = discharge_j, drain_j, loss_j
     return states, flows, steps

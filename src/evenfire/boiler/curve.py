@@ -59,8 +59,8 @@ def fuel_curve(spec: BoilerSpec, working_pa: float, feedwater_k: float) -> FuelC
 
     Notes
     -----
-    Interpolating efficiency instead would differ by at most (d_eta * d_load) / (4 eta * load) of the fuel
-    midway between two points, e.g. 0.37 % between 89 % at quarter and 91 % at half load.
+    Interpolating efficiency instead would differ by about (d_eta * d_load) / (4 eta * load) of the fuel
+    midway between two points, e.g. 0.36 % between 89 % at quarter and 91 % at half load.
 
     References
     ----------

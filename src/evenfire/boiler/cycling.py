@@ -75,10 +75,8 @@ def cycling_starts_per_s(
         raise out_of_range("P111", "load of a cycling burner", worst, "kg/s", 0.0, firing_kg_s)
     spare = np.maximum(firing_kg_s - load, 0.0)
     gross = firing_kg_s + standing_kg_s
-    starts = (load + standing_kg_s) * spare / (buffer_kg * gross)
-    if minimum_off_s > 0.0:
-        starts = np.minimum(starts, spare / (gross * minimum_off_s))
-    return np.asarray(starts)
+    emptying = load + standing_kg_s
+    return np.asarray(emptying / np.maximum(buffer_kg, emptying * minimum_off_s) * spare / gross)
 
 
 def standing_steam_kg_s(spec: BoilerSpec, working_pa: float) -> float:
