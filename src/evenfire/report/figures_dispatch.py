@@ -132,13 +132,15 @@ def _draw_steam(
 
 def _draw_pressure(axes: Axes, day: DaySchedule, hours: FloatArray, vessel: VesselChoice) -> None:
     axes.plot(hours[:-1], day.vessel_bar_abs, color=BLUE, linewidth=1.4)
-    limits = ((vessel.charged_bar_abs, "charged", "top"), (vessel.discharged_bar_abs, "discharged", "bottom"))
+    window = vessel.charged_bar_abs - vessel.discharged_bar_abs
+    axes.set_ylim(vessel.discharged_bar_abs - 0.25 * window, vessel.charged_bar_abs + 0.25 * window)
+    limits = ((vessel.charged_bar_abs, "charged", "bottom"), (vessel.discharged_bar_abs, "discharged", "top"))
     for limit, words, side in limits:
         axes.axhline(limit, color=VERMILION, linewidth=1.0, linestyle="--")
         axes.annotate(
             words,
             (hours[0], limit),
-            xytext=(3, -2 if side == "top" else 2),
+            xytext=(3, -1 if side == "top" else 1),
             textcoords="offset points",
             va=side,
             fontsize=8,

@@ -31,24 +31,23 @@ def digits(value: float, significant: int = 3) -> str:
     return number(value, max(0, significant - 1 - math.floor(math.log10(abs(value)))))
 
 
-def plain(value: float) -> str:
-    """An input as it was stated: up to six significant digits, no trailing zeros.
+def plain(value: float, significant: int = 6) -> str:
+    """An input as it was stated: no trailing zeros, its whole part never rounded.
 
-    >>> plain(46.0), plain(0.0175), plain(172000.0)
-    ('46', '0.0175', '172,000')
-    """
-    text = f"{value:.6g}" if abs(value) < 1.0 else f"{float(f'{value:.6g}'):,.6f}".rstrip("0").rstrip(".")
-    return text.replace("-", "−")
-
-
-def short(value: float, significant: int = 3) -> str:
-    """A number for running text: so many significant digits, no trailing zeros.
-
-    >>> short(7.5), short(11.8), short(0.3594), short(25200.0)
-    ('7.5', '11.8', '0.359', '25,200')
+    >>> plain(46.0), plain(0.0175), plain(172000.0), plain(61.23456, 4), plain(4983.27, 4)
+    ('46', '0.0175', '172,000', '61.23', '4,983')
     """
     text = digits(value, significant)
     return text.rstrip("0").rstrip(".") if "." in text else text
+
+
+def short(value: float) -> str:
+    """A number for running text: three significant digits, no trailing zeros.
+
+    >>> short(7.5), short(11.83), short(0.3594), short(25200.0)
+    ('7.5', '11.8', '0.359', '25,200')
+    """
+    return plain(value, 3)
 
 
 def sentence(words: str) -> str:

@@ -25,7 +25,7 @@ from evenfire.report.page_equipment import boilers_table, vessel_table
 from evenfire.report.page_inputs import (
     boilers_on_offer_table,
     files_table,
-    inputs_table,
+    input_tables,
     notices_table,
     record_table,
     typical_days_errors,
@@ -103,7 +103,7 @@ def report_page(appraisal: Appraisal) -> str:
         typical_days=typical_days_table(appraisal),
         typical_days_errors=typical_days_errors(appraisal),
         gaps=gap_table(appraisal),
-        inputs=inputs_table(appraisal),
+        inputs=input_tables(appraisal),
         boilers_on_offer=boilers_on_offer_table(appraisal) if appraisal.case.boilers else None,
         assumed=notices_table(
             tuple(each for each in notices if each.severity == "assumed"),

@@ -5,7 +5,7 @@ from __future__ import annotations
 from evenfire.appraisal.results import Appraisal
 from evenfire.demand.statistics import demand_statistics
 from evenfire.errors import Notice
-from evenfire.report.formats import digits, number, percent, plain, signed_percent
+from evenfire.report.formats import MISSING, digits, number, percent, plain, signed_percent
 from evenfire.report.page_table import Group, Table, plain_table
 from evenfire.report.trade_units import SECONDS_PER_MINUTE, Quantity, boiler_quantities, input_sections
 from evenfire.units import KG_PER_TONNE, kg_s_to_t_h
@@ -95,16 +95,16 @@ def typical_days_errors(appraisal: Appraisal) -> Table:
     )
 
 
-def inputs_table(appraisal: Appraisal) -> Table:
-    """Every input that is one number, as the program used it."""
-    return Table(
-        caption="Inputs as the program used them.",
-        head=("", "", ""),
-        groups=tuple(
-            Group(title=SECTION_TITLES[section], rows=tuple(_input_row(each) for each in quantities))
-            for section, quantities in input_sections(appraisal.case)
-        ),
-        word_columns=(2,),
+def input_tables(appraisal: Appraisal) -> tuple[Table, ...]:
+    """Every input that is one number, as the program used it, one table per section of the case."""
+    return tuple(
+        plain_table(
+            SECTION_TITLES[section],
+            ("", "", ""),
+            tuple(_input_row(each) for each in quantities),
+            word_columns=(2,),
+        )
+        for section, quantities in input_sections(appraisal.case)
     )
 
 
@@ -118,7 +118,10 @@ def boilers_on_offer_table(appraisal: Appraisal) -> Table:
         head=head,
         groups=tuple(
             Group(
-                title=title, rows=tuple(_boiler_row(each) for offer, each in offers if offer.existing is old)
+                title=title,
+                rows=tuple(
+                    tuple(_shown(cell, 4) for cell in each) for offer, each in offers if offer.existing is old
+                ),
             )
             for title, old in (("In place", True), ("On offer", False))
             if any(offer.existing is old for offer, _ in offers)
@@ -150,17 +153,16 @@ def files_table(appraisal: Appraisal) -> Table:
 
 
 def _input_row(quantity: Quantity) -> tuple[str, str, str]:
-    value = quantity.value if isinstance(quantity.value, str) else plain(quantity.value)
-    unit = "" if quantity.unit == "1" else quantity.unit
-    return (quantity.words, value, unit)
+    return (quantity.words, _shown(quantity), "" if quantity.unit == "1" else quantity.unit)
 
 
 def _head(quantity: Quantity, currency: str) -> str:
     unit = currency if quantity.unit == "money" else quantity.unit
-    return f"{quantity.words} [{unit}]" if unit else quantity.words
+    return f"{quantity.words} [{unit}]" if unit not in ("", "1") else quantity.words
 
 
-def _boiler_row(quantities: tuple[Quantity, ...]) -> tuple[str, ...]:
-    return tuple(
-        each.value if isinstance(each.value, str) else plain(round(each.value, 1)) for each in quantities
-    )
+def _shown(quantity: Quantity, significant: int = 6) -> str:
+    value = quantity.value
+    if value is None:
+        return MISSING
+    return value if isinstance(value, str) else plain(value, significant)

@@ -8,7 +8,7 @@ import numpy as np
 
 from evenfire.appraisal.results import Appraisal
 from evenfire.report.figures_demand import firm_capacity_t_h, steam_capacity_t
-from evenfire.report.formats import MISSING, digits, number, short
+from evenfire.report.formats import MISSING, digits, number, plain, short
 from evenfire.report.page_table import Table, plain_table
 from evenfire.units import KG_PER_TONNE, kg_s_to_t_h
 
@@ -30,7 +30,7 @@ def storage_need_table(appraisal: Appraisal) -> Table:
         tuple(
             (
                 each.name,
-                short(firm_capacity_t_h(each), 4),
+                plain(firm_capacity_t_h(each), 4),
                 *_need(appraisal, firm_capacity_t_h(each)),
                 digits(steam_capacity_t(each)),
                 number(each.record_shortfall_t, 1),

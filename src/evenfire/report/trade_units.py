@@ -32,7 +32,8 @@ class Quantity:
 
     key: str
     words: str
-    value: float | str
+    value: float | str | None
+    """None where there is no such number."""
     unit: str = ""
 
 
@@ -51,11 +52,11 @@ def boiler_quantities(offer: BoilerOffer) -> tuple[Quantity, ...]:
     """What a case states or assumes about one boiler, in the order of the page's table."""
     spec = offer.spec
     best = max(point.efficiency_lhv for point in spec.efficiency_points)
-    investment = offer.investment.amount if offer.investment is not None else 0.0
+    installed_cost = offer.investment.amount if offer.investment is not None else None
     return (
         Quantity(key="name", words="Boiler", value=spec.name),
         Quantity(key="rating_kg_h", words="Rating", value=kg_s_to_kg_h(spec.rated_kg_s), unit="kg/h"),
-        Quantity(key="turndown_ratio", words="Turndown", value=spec.turndown, unit=": 1"),
+        Quantity(key="turndown_ratio", words="Turndown", value=spec.turndown, unit="1"),
         Quantity(
             key="largest_working_pressure_bar_g",
             words="Largest working pressure",
@@ -79,7 +80,7 @@ def boiler_quantities(offer: BoilerOffer) -> tuple[Quantity, ...]:
         Quantity(
             key="maintenance_per_year", words="Upkeep per year", value=offer.maintenance_cost, unit="money"
         ),
-        Quantity(key="installed_cost", words="Installed cost", value=investment, unit="money"),
+        Quantity(key="installed_cost", words="Installed cost", value=installed_cost, unit="money"),
     )
 
 
