@@ -56,7 +56,7 @@ def _sheet(path: Path, form: RecordFormat) -> pd.DataFrame:
             allowed = "name one of the sheets: " + ", ".join(sheets)
             raise RecordError(_problem("R129", path.name, found, allowed))
         sheet = form.sheet or sheets[0]
-        rows = workbook.parse(sheet, header=None, nrows=form.header_row)
+        rows = pd.read_excel(workbook, sheet_name=sheet, header=None, nrows=form.header_row)
         names = [] if len(rows) < form.header_row else [str(cell).strip() for cell in rows.iloc[-1]]
         check_columns(path.name, form.columns, names)
         options: dict[str, Any] = {
@@ -65,7 +65,7 @@ def _sheet(path: Path, form: RecordFormat) -> pd.DataFrame:
             "usecols": sorted(names.index(column) for column in form.columns),
             "na_values": list(form.missing_values),
         }
-        cells = workbook.parse(sheet, **options)
+        cells = pd.read_excel(workbook, sheet_name=sheet, **options)
     cells.columns = pd.Index([names[at] for at in options["usecols"]])
     return cells
 

@@ -17,7 +17,7 @@ KINDS = ("workday", "saturday", "sunday")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
-class _Days:
+class Days:
     """Complete calendar days of a record."""
 
     dates: tuple[dt.date, ...]
@@ -67,19 +67,19 @@ def typical_days(record: DemandRecord, step_s: float) -> TypicalDays:
     >>> [(day.name, round(day.days_per_year, 1)) for day in days.days]
     [('workday', 234.6), ('saturday', 52.1), ('sunday', 52.1), ('peak day', 26.1)]
     """
-    days = _complete_days(record, step_s)
-    peaks = _peak_days(record, days)
+    days = complete_days(record, step_s)
+    peaks = peak_days(record, days)
     day_weight = DAYS_PER_YEAR / len(days.dates)
     chosen = []
     for kind in KINDS:
         members = [at for at, date in enumerate(days.dates) if at not in peaks and day_kind(date) == kind]
         if members:
-            at = members[_nearest_to_mean(days.flow_kg_s[members])]
-            chosen.append(_typical_day(kind, at, days, day_weight * len(members)))
+            at = members[nearest_to_mean(days.flow_kg_s[members])]
+            chosen.append(typical_day(kind, at, days, day_weight * len(members)))
     for number, at in enumerate(peaks, start=1):
         name = "peak day" if len(peaks) == 1 else f"peak day {number}"
-        chosen.append(_typical_day(name, at, days, day_weight))
-    return _with_errors(record, step_s, tuple(chosen))
+        chosen.append(typical_day(name, at, days, day_weight))
+    return with_errors(record, step_s, tuple(chosen))
 
 
 def day_kind(date: dt.date) -> str:
@@ -91,7 +91,8 @@ def day_kind(date: dt.date) -> str:
     return KINDS[max(0, date.weekday() - 4)]
 
 
-def _complete_days(record: DemandRecord, step_s: float) -> _Days:
+def complete_days(record: DemandRecord, step_s: float) -> Days:
+    """Complete calendar days of a record, raw and averaged to a step (R116, R117 as for typical days)."""
     per_day = SECONDS_PER_DAY / record.step_s
     merged = step_s / record.step_s
     steps = SECONDS_PER_DAY / step_s if step_s > 0.0 else 0.0
@@ -119,14 +120,15 @@ def _complete_days(record: DemandRecord, step_s: float) -> _Days:
             )
         )
     raw = record.flow_kg_s[skipped : skipped + count * round(per_day)].reshape(count, -1)
-    return _Days(
+    return Days(
         dates=tuple(midnight.date() + dt.timedelta(days=day) for day in range(count)),
         raw_kg_s=raw,
         flow_kg_s=raw.reshape(count, round(steps), -1).mean(axis=2),
     )
 
 
-def _peak_days(record: DemandRecord, days: _Days) -> list[int]:
+def peak_days(record: DemandRecord, days: Days) -> list[int]:
+    """Position of the day with the highest step and, if another, of the day that needs most storage."""
     highest = int(days.raw_kg_s.max(axis=1).argmax())
     capacity = (float(record.flow_kg_s.mean()) + float(record.flow_kg_s.max())) / 2.0
     need = np.zeros(len(days.dates))
@@ -137,20 +139,23 @@ def _peak_days(record: DemandRecord, days: _Days) -> list[int]:
     return [highest] if need[neediest] <= need[highest] else [highest, neediest]
 
 
-def _nearest_to_mean(flow: FloatArray) -> int:
+def nearest_to_mean(flow: FloatArray) -> int:
+    """Position of the day closest to the mean day in steam and load duration curve; shape (days, steps)."""
     curves = np.sort(flow, axis=1)
     away = curves - curves.mean(axis=0)
     distance: FloatArray = np.abs(away.sum(axis=1)) + np.abs(away).sum(axis=1)
     return int(distance.argmin())
 
 
-def _typical_day(name: str, at: int, days: _Days, days_per_year: float) -> TypicalDay:
+def typical_day(name: str, at: int, days: Days, days_per_year: float) -> TypicalDay:
+    """One day of the table with its name and weight."""
     return TypicalDay(
         name=name, date=days.dates[at], days_per_year=days_per_year, flow_kg_s=days.flow_kg_s[at].copy()
     )
 
 
-def _with_errors(record: DemandRecord, step_s: float, days: tuple[TypicalDay, ...]) -> TypicalDays:
+def with_errors(record: DemandRecord, step_s: float, days: tuple[TypicalDay, ...]) -> TypicalDays:
+    """Typical days with what they get wrong against the raw record."""
     flow = np.concatenate([day.flow_kg_s for day in days])
     weight = np.concatenate(
         [np.full(day.flow_kg_s.size, day.days_per_year / day.flow_kg_s.size) for day in days]
@@ -161,12 +166,12 @@ def _with_errors(record: DemandRecord, step_s: float, days: tuple[TypicalDay, ..
         step_s=step_s,
         days=days,
         energy_error=float(np.average(flow, weights=weight)) / mean - 1.0,
-        duration_curve_error=_curve_distance(flow, weight, record.flow_kg_s) / mean,
+        duration_curve_error=curve_distance(flow, weight, record.flow_kg_s) / mean,
         peak_error=float(flow.max()) / peak - 1.0,
     )
 
 
-def _curve_distance(flow: FloatArray, weight: NDArray[np.float64], record_flow: FloatArray) -> float:
+def curve_distance(flow: FloatArray, weight: NDArray[np.float64], record_flow: FloatArray) -> float:
     """Mean absolute difference of two load duration curves: the area between their distributions."""
     order = np.argsort(flow)
     levels = np.unique(np.concatenate([flow, record_flow]))
