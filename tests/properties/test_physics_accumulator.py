@@ -107,6 +107,7 @@ def test_charging_raises_the_level(window, fill):
     assert after > fill
 
 
+@settings(deadline=None)
 @given(volume=volumes, ratio=st.floats(1.0, 10.0), fill=st.floats(0.001, 0.999))
 def test_level_and_volume_are_inverse(volume, ratio, fill):
     """The level of a fill holds that fill, and the surface fits into the vessel."""
@@ -117,6 +118,7 @@ def test_level_and_volume_are_inverse(volume, ratio, fill):
     assert 0.0 < free_surface_m2(shape, level) < longest * shape.diameter_m
 
 
+@settings(deadline=None)
 @given(volume=volumes, pressure=st.floats(0.25e5, 159e5), fill=st.floats(0.01, 0.99))
 def test_states_are_recognised(volume, pressure, fill):
     """A state built from pressure and fill gives both back."""

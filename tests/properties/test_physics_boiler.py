@@ -105,6 +105,7 @@ def test_hotter_water_costs_efficiency(spec, low, high, feedwater_k):
     assert working_pressure_factor(spec, spec.efficiency_at_pa, feedwater_k) == pytest.approx(1.0, rel=1e-12)
 
 
+@settings(deadline=None)
 @given(
     firing=st.floats(0.01, 10.0),
     buffer=st.floats(0.1, 1e3),
