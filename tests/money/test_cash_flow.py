@@ -192,6 +192,13 @@ def test_residual_value_above_book_value_is_taxed():
     assert flow.lines["tax on investment"] == pytest.approx([0.0, -25.0, -25.0, 0.0, 0.0, 25.0])
 
 
+def test_depreciation_may_pause_for_a_year():
+    """Shares of zero are allowed between others."""
+    tax = Tax(rate=0.5, depreciation_shares=(0.5, 0.0, 0.5))
+    flow = only(Investment(name="vessel", amount=100.0, life_years=15), tax=tax)
+    assert flow.lines["tax on investment"] == pytest.approx(years(15, y1=-25.0, y3=-25.0))
+
+
 def test_inflation_erodes_depreciation_and_late_grants_in_real_money():
     """Sums fixed in nominal money shrink year by year in money of the price date."""
     thing = Investment(

@@ -74,6 +74,24 @@ def test_pays_back_only_by_its_residual_value():
     assert result.simple_years == pytest.approx(9.0 + 28.0 / 68.0)
 
 
+def test_reserve_is_judged_on_discounted_savings():
+    """14 a year for 100 at 8 % is worth 93.9; only the 60 at the end make it pay back at that rate."""
+    residual = [0.0] * 10 + [-60.0]
+    result = payback(flow(fuel=90.0), flow(investment=[100.0], fuel=76.0, residual_value=residual))
+    assert result.simple_years == pytest.approx(100.0 / 14.0)
+    assert result.note == "pays back only by its residual value"
+
+
+def test_residual_value_of_the_reference_is_left_out_of_that_reserve():
+    """Both keep 60 at the end: 80 saved of 100 never pays back, 110 saved pays back without reserve."""
+    residual = [0.0] * 10 + [-60.0]
+    reference = flow(rate=0.0, fuel=90.0, residual_value=residual)
+    alternative = flow(rate=0.0, investment=[100.0], fuel=82.0, residual_value=residual)
+    assert words(reference, alternative) == "never pays back"
+    alternative = flow(rate=0.0, investment=[100.0], fuel=79.0, residual_value=residual)
+    assert payback(reference, alternative).note == ""
+
+
 def test_later_outlay_puts_it_behind_again():
     """Paid back in two years, but a replacement in year 9 is never recovered."""
     result = payback(flow(fuel=50.0), flow(investment=[60.0], fuel=20.0, replacement=[0.0] * 9 + [2000.0]))

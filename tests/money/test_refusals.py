@@ -51,6 +51,14 @@ def test_rates_of_minus_100_percent_and_less_are_refused(rate):
             factor()
 
 
+def test_rates_that_burst_numbers_are_refused():
+    """A rate a hair above -100 % over 60 years would give 1e480 and no answer; it is refused instead."""
+    with pytest.raises(MoneyError, match=r"over 60 a; must not change money by more than .*\[M101\]"):
+        uniform_present_value(-0.99999999, 60)
+    error = refused(discount_rate=-0.99999999, horizon_years=60)
+    assert [problem.code for problem in error.problems] == ["M101"]
+
+
 def test_horizon_below_one_year_is_refused():
     """Factors of yearly amounts need a year; a single payment may fall in year 0 but not before."""
     with pytest.raises(MoneyError, match=r"found 0 a; must be a whole number of years, at least 1 \[M102\]"):
@@ -181,6 +189,11 @@ def estimate(correlation="steam boiler by heat output", size=5.0e6, bar_g=10.0, 
             "the source gives the cost of the equipment alone",
         ),
         ({"correlation": "horizontal vessel by volume", "size": 20.0}, "M110", "diameter: found none"),
+        (
+            {"correlation": "horizontal vessel by volume", "size": 20.0, "diameter_m": 0.0},
+            "M110",
+            "diameter: found 0 m",
+        ),
     ],
 )
 def test_estimate_outside_its_source_is_refused(changes, code, text):

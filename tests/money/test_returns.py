@@ -4,7 +4,7 @@ import numpy as np
 import numpy_financial
 import pytest
 
-from evenfire.money.cash_flow import cash_flow
+from evenfire.money.cash_flow import CashFlow, cash_flow
 from evenfire.money.rate_of_return import internal_rates_of_return, modified_rate_of_return
 from evenfire.money.returns import returns
 from evenfire.money.terms import Grant, Investment, Price
@@ -88,12 +88,22 @@ def test_cheaper_plant_that_costs_more_to_run_has_the_rate_of_a_loan():
 
 
 def test_resale_value_given_up_gives_two_rates():
-    """The old plant could be sold for 300 at the end, the new one saves 25 a year: words instead of a rate."""
+    """A new plant saves 25 a year, the old one could be sold for 300 at the end: no single rate."""
     old = thing(0.0, residual_value=300.0)
     result = returns(plant(60.0, old), plant(35.0, thing(100.0)))
     assert len(result.internal.rates) == 2
     assert result.internal.rate is None
     assert result.internal.note == "several rates of return: compare net present costs"
+
+
+def test_saving_that_only_touches_zero_has_no_rate_to_judge_by():
+    """-100, +220, -121 is a loss at every rate but 10 %: the rate is shown with words, not as a return."""
+    terms = finance(horizon_years=2)
+    nothing = CashFlow(finance=terms, lines={"fuel": np.zeros(3)})
+    result = returns(nothing, CashFlow(finance=terms, lines={"fuel": np.array([100.0, -220.0, 121.0])}))
+    assert result.internal.rates == pytest.approx((0.1,), abs=1e-7)
+    assert result.internal.rate is None
+    assert result.internal.note.startswith("the net saving only touches zero")
 
 
 def test_value_of_one_sign_has_no_rate():

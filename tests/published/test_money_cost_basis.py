@@ -98,7 +98,7 @@ def test_bare_module_horizontal_vessel():
 )
 def test_six_tenths_rule(from_size, to_size, text):
     """Capacity exponent 0.6 (C8)."""
-    scaled = capacity_scaled_cost(1.0, from_size=from_size, to_size=to_size, exponent=0.6)
+    scaled = capacity_scaled_cost(1.0, from_size=from_size, to_size=to_size)
     Printed(text, "1", "Peters and Timmerhaus, six-tenths rule (C8)").check(scaled)
 
 

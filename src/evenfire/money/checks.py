@@ -9,6 +9,8 @@ from dataclasses import fields
 from evenfire.errors import MoneyError, Problem
 from evenfire.money.terms import Finance, Grant, Investment, Price, Prices, Tax, YearlyQuantities
 
+MOST_DECADES = 100.0
+"""Powers of ten by which a rate may change money over its years; far beyond any real one."""
 SUM_TOLERANCE = 1e-6
 """How far shares typed as percentages may miss a sum of one."""
 
@@ -31,7 +33,7 @@ def require_sound(
     problems = [*_finance_problems(finance)]
     if prices is not None:
         for field in fields(prices):
-            problems += _price_problems(getattr(prices, field.name), f"price {field.name}")
+            problems += _price_problems(getattr(prices, field.name), f"price {field.name}", finance)
     for investment in investments:
         problems += _investment_problems(investment, finance)
     if quantities is not None:
@@ -40,14 +42,21 @@ def require_sound(
         raise MoneyError(*problems)
 
 
-def rate_problems(rate: float, where: str) -> Iterator[Problem]:
-    """The problem of a yearly rate of -100 % or less, or not a number."""
+def rate_problems(rate: float, where: str, years: float = 1.0) -> Iterator[Problem]:
+    """The problem of a yearly rate of -100 % or less, not a number, or absurd over so many years."""
     if not (math.isfinite(rate) and rate > -1.0):
         yield Problem(
             code="M101",
             where=where,
             found=f"found {rate:g} per year",
             allowed="must be a finite number above -1 (-100 % per year)",
+        )
+    elif abs(years) * abs(math.log10(1.0 + rate)) > MOST_DECADES:
+        yield Problem(
+            code="M101",
+            where=where,
+            found=f"found {rate:g} per year over {years:g} a",
+            allowed=f"must not change money by more than a factor of 1e{MOST_DECADES:g} over its years",
         )
 
 
@@ -64,10 +73,11 @@ def year_problems(years: int, fewest: int, where: str) -> Iterator[Problem]:
 
 def _finance_problems(finance: Finance) -> Iterator[Problem]:
     yield from year_problems(finance.horizon_years, 1, "finance, horizon_years")
-    yield from rate_problems(finance.discount_rate, "finance, discount_rate")
-    yield from rate_problems(finance.inflation, "finance, inflation")
+    years = finance.horizon_years
+    yield from rate_problems(finance.discount_rate, "finance, discount_rate", years)
+    yield from rate_problems(finance.inflation, "finance, inflation", years)
     if finance.reinvestment_rate is not None:
-        yield from rate_problems(finance.reinvestment_rate, "finance, reinvestment_rate")
+        yield from rate_problems(finance.reinvestment_rate, "finance, reinvestment_rate", years)
     if finance.rate_basis not in ("real", "nominal"):
         yield Problem(
             code="M106",
@@ -104,8 +114,8 @@ def _tax_problems(tax: Tax) -> Iterator[Problem]:
         )
 
 
-def _price_problems(price: Price, where: str) -> Iterator[Problem]:
-    yield from rate_problems(price.escalation, f"{where}, escalation")
+def _price_problems(price: Price, where: str, finance: Finance) -> Iterator[Problem]:
+    yield from rate_problems(price.escalation, f"{where}, escalation", finance.horizon_years)
     if not math.isfinite(price.amount):
         yield Problem(
             code="M103", where=where, found=f"found {price.amount:g}", allowed="must be a finite number"
@@ -126,7 +136,7 @@ def _investment_problems(investment: Investment, finance: Finance) -> Iterator[P
     where = f"investment '{investment.name}'"
     yield from year_problems(investment.life_years, 1, f"{where}, life_years")
     if investment.escalation is not None:
-        yield from rate_problems(investment.escalation, f"{where}, escalation")
+        yield from rate_problems(investment.escalation, f"{where}, escalation", finance.horizon_years)
     for name in ("amount", "replacement_amount", "residual_value"):
         amount = getattr(investment, name)
         if amount is not None and not (math.isfinite(amount) and amount >= 0.0):

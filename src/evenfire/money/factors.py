@@ -44,7 +44,7 @@ def single_present_value(rate: float, year: int) -> float:
     >>> single_present_value(0.03, 10)
     0.744094
     """
-    _require(*rate_problems(rate, "discount rate"), *year_problems(year, 0, "year"))
+    _require(*rate_problems(rate, "discount rate", year), *year_problems(year, 0, "year"))
     return (1.0 + rate) ** -year
 
 
@@ -123,8 +123,8 @@ def escalating_present_value(rate: float, escalation: float, years: int) -> floa
     10.0
     """
     _require(
-        *rate_problems(rate, "discount rate"),
-        *rate_problems(escalation, "escalation"),
+        *rate_problems(rate, "discount rate", years),
+        *rate_problems(escalation, "escalation", years),
         *year_problems(years, 1, "years"),
     )
     log_ratio = math.log1p(escalation) - math.log1p(rate)
