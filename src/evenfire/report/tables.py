@@ -9,7 +9,7 @@ from collections.abc import Iterator
 
 from evenfire.appraisal.results import AlternativeResult, Appraisal, DaySchedule
 
-FORMULA_SIGNS = ("=", "+", "-", "@", "\t", "\r", "\n")
+FORMULA_SIGNS = ("=", "+", "-", "@")
 MINUTES_PER_HOUR = 60
 
 
@@ -28,15 +28,15 @@ def dispatch_table(appraisal: Appraisal) -> str:
     Returns
     -------
     str
-        UTF-8 text with a header line. A cell that user text would turn into a formula starts with an
-        apostrophe.
+        UTF-8 text with a header line. User text stands on one line, and where it would make a
+        spreadsheet see a formula it starts with an apostrophe.
     """
     boilers = boiler_columns(appraisal)
     text = io.StringIO()
     writer = csv.writer(text, lineterminator="\n")
     head = ["alternative", "day", "date", "days_per_year", "time", "hours_per_year", "demand_t_h"]
     for boiler in boilers:
-        head += [f"output_t_h [{boiler}]", f"state [{boiler}]"]
+        head += [f"output_t_h [{_one_line(boiler)}]", f"state [{_one_line(boiler)}]"]
     head += ["unmet_t_h", "vented_t_h", "stored_t", "vessel_bar_abs"]
     writer.writerow(head)
     for alternative in appraisal.alternatives:
@@ -111,4 +111,9 @@ def _number(value: float, digits: int = 6) -> str:
 
 
 def _as_text(words: str) -> str:
-    return f"'{words}" if words.startswith(FORMULA_SIGNS) else words
+    line = _one_line(words)
+    return f"'{line}" if line.startswith(FORMULA_SIGNS) else line
+
+
+def _one_line(words: str) -> str:
+    return " ".join(words.split())
