@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
 from importlib.metadata import version
 
 from evenfire.appraisal.alternatives import RULES
@@ -18,9 +17,8 @@ from evenfire.demand.storage_need import storage_need
 from evenfire.demand.typical_days import typical_days
 from evenfire.errors import InfeasibleError, Notice, Problem
 from evenfire.plan.inputs import PlanInputs
+from evenfire.plan.optimum import best_plan
 from evenfire.plan.outcome import Has, Plan, PlanOutcome, Stop, Watcher
-from evenfire.plan.search import Search
-from evenfire.plan.verify import judged
 
 _PACKAGES = ("evenfire", "pyomo", "highspy", "numpy", "pandas", "CoolProp", "numba", "scipy")
 
@@ -94,11 +92,16 @@ def planned_alternatives(
         if outcomes and outcomes[-1].stop is Stop.INTERRUPTED:
             outcomes.append(_not_begun(name))
             continue
-        outcome = Search(inputs, rules, tuple(plans)).run(case.plan.gap, case.plan.time_limit_s, watch)
+        outcome = best_plan(
+            inputs,
+            rules,
+            gap=case.plan.gap,
+            time_limit_s=case.plan.time_limit_s,
+            known=tuple(plans),
+            watch=watch,
+        )
         if outcome.plan is not None:
-            judgement = judged(inputs, rules, outcome.plan)
-            outcome = replace(outcome, cost_k=judgement.cost_k, largest_violation=judgement.largest_violation)
-            plans.append(outcome.plan)  # type: ignore[arg-type]  # replace() keeps the plan
+            plans.append(outcome.plan)
         outcomes.append(outcome)
     return tuple(outcomes)
 

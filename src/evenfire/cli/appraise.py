@@ -44,7 +44,8 @@ def run(case_path: Path, out: Path | None, *, replace: bool, quiet: bool) -> Exi
         if notice.severity == "warning":
             console.print(f"Note: {notice.text}", soft_wrap=True)
     console.print(
-        "Pressurised steam and hot water kill: these sizes are for an investment decision, not for construction.",
+        "Pressurised steam and hot water kill. These sizes are for an investment decision, not for "
+        "construction.",
         soft_wrap=True,
     )
     console.print(f"Written: {folder / 'report.html'}", soft_wrap=True)

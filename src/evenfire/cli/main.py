@@ -56,7 +56,7 @@ def schema() -> None:
     """
     import json
 
-    from evenfire.case.load import case_json_schema
+    from evenfire.case.schema import case_json_schema
 
     typer.echo(json.dumps(case_json_schema(), indent=2, ensure_ascii=False))
 

@@ -47,7 +47,7 @@ def alternative_model(inputs: PlanInputs, rules: AlternativeRules) -> pyo.Concre
     _add_adequacy(m, inputs, rules, boilers)
     _add_fuel(m, inputs, boilers)
     _add_objective(m, inputs, boilers)
-    return m  # type: ignore[no-any-return]  # Pyomo builds its components dynamically
+    return m
 
 
 def _add_investment(m: Any, inputs: PlanInputs, rules: AlternativeRules, boilers: list[PlanBoiler]) -> None:

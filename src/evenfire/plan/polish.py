@@ -197,7 +197,7 @@ def polished(
             DayDispatch(
                 in_service=np.array(days[d].in_service),
                 mode=days[d].mode,
-                output_t_h=np.array(rows).reshape(len(boilers), -1),
+                output_t_h=np.array(rows).reshape(len(boilers), len(unmet)),
                 start=burner_starts(boilers, days[d].mode),
                 stored_t=zeros[d] if stored is None else solution[stored],
                 charge_t_h=zeros[d] if charge is None else solution[charge],

@@ -102,7 +102,7 @@ def assign(model: pyo.ConcreteModel, inputs: PlanInputs, plan: Plan) -> None:
             m.stored[d, t].set_value(float(day.stored_t[t]), skip_validation=True)
             m.charge[d, t].set_value(float(day.charge_t_h[t]), skip_validation=True)
             m.discharge[d, t].set_value(float(day.discharge_t_h[t]), skip_validation=True)
-            m.charging[d, t].set_value(int(day.charge_t_h[t] > 0))
+            m.charging[d, t].set_value(int(day.charge_t_h[t] > day.discharge_t_h[t]))
             m.unmet[d, t].set_value(float(day.unmet_t_h[t]), skip_validation=True)
             m.vented[d, t].set_value(float(day.vented_t_h[t]), skip_validation=True)
     for b, i, j in m.BDD:
