@@ -6,10 +6,11 @@ import codecs
 import csv
 import gzip
 import io
+import warnings
 import zlib
 from collections.abc import Hashable
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -43,8 +44,6 @@ def text_table(path: Path, form: RecordFormat) -> Table:
         R102 for a file that cannot be unpacked, decoded or is empty, R103 for a column, R121 when two
         delimiters would fit, R131 for rows of another width.
     """
-    import pandas as pd
-
     notices: list[Notice] = []
     content = _utf8_content(path, form, notices)
     header_from, header_to = _header_span(path, form, content)
@@ -57,13 +56,7 @@ def text_table(path: Path, form: RecordFormat) -> Table:
     del content
     table = _cells_of(body, delimiter, names, form, form.columns, form.text_columns)
     doubtful = tuple(
-        meter.column
-        for meter in form.meters
-        if pd.api.types.is_numeric_dtype(table[meter.column])
-        and (
-            form.decimal == ","
-            or (not form.decimal and may_be_thousands(table[meter.column].to_numpy(dtype=np.float64)))
-        )
+        meter.column for meter in form.meters if _must_stay_text(table[meter.column], form.decimal)
     )
     if doubtful:
         table[list(doubtful)] = _cells_of(body, delimiter, names, form, doubtful, doubtful)
@@ -77,6 +70,13 @@ def text_table(path: Path, form: RecordFormat) -> Table:
         table, lines = table.iloc[:-1], lines[:-1]
     filled = table.notna().any(axis=1).to_numpy()
     return Table(cells=table[filled], lines=lines[filled], notices=tuple(notices))
+
+
+def _must_stay_text(cells: pd.Series[Any], decimal: str) -> bool:
+    """Whether a column was not read as numbers, or its numbers might be written in another way."""
+    if cells.dtype.kind not in "iuf" or decimal == ",":
+        return True
+    return not decimal and may_be_thousands(cells.to_numpy(dtype=np.float64))
 
 
 def _cells_of(
@@ -93,18 +93,19 @@ def _cells_of(
     missing: dict[str, list[str]] = {
         str(names.index(meter.column)): list(form.missing_values) for meter in form.meters
     }
-    table = pd.read_csv(
-        io.BytesIO(body),
-        sep=delimiter,
-        header=None,
-        names=[str(at) for at in range(len(names))],
-        usecols=[str(names.index(column)) for column in columns],
-        dtype=texts,
-        na_values=missing,
-        skip_blank_lines=False,
-        skipinitialspace=True,
-        low_memory=False,
-    )
+    with warnings.catch_warnings():
+        warnings.simplefilter("ignore", pd.errors.DtypeWarning)  # such columns are read again as text
+        table = pd.read_csv(
+            io.BytesIO(body),
+            sep=delimiter,
+            header=None,
+            names=[str(at) for at in range(len(names))],
+            usecols=[str(names.index(column)) for column in columns],
+            dtype=texts,
+            na_values=missing,
+            skip_blank_lines=False,
+            skipinitialspace=True,
+        )
     table.columns = pd.Index([names[int(str(at))] for at in table.columns])
     return table
 
