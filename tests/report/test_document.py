@@ -95,6 +95,7 @@ def test_prices_read_back_as_they_were_stated(read_back: dict[str, Any]) -> None
     assert inputs["money"]["electricity_price_per_mwh"] == 140.0
     assert inputs["money"]["water_price_per_m3"] == 2.6
     assert inputs["money"]["fan_and_pump_kwh_per_t_steam"] == 3.5
+    assert inputs["vessel"]["windows_bar_g"] == ["8.5 to 4.6", "12 to 4.6"]
     assert inputs["steam"]["process_pressure_bar_g"] == 4.0
     assert inputs["steam"]["feedwater_temperature_degc"] == 103.0
     assert [boiler["rating_kg_h"] for boiler in inputs["boilers"]] == [5000.0, 2500.0, 4000.0, 5000.0, 8000.0]

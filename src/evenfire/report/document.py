@@ -219,7 +219,7 @@ def _rounded(value: Any) -> Any:
     """Plain data with floats rounded and ``None`` for those that are not finite."""
     if isinstance(value, dict):
         return {key: _rounded(each) for key, each in value.items()}
-    if isinstance(value, list):
+    if isinstance(value, list | tuple):
         return [_rounded(each) for each in value]
     if isinstance(value, float):
         return float(f"{value:.{SIGNIFICANT_DIGITS}g}") + 0.0 if math.isfinite(value) else None

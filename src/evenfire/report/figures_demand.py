@@ -10,7 +10,7 @@ from matplotlib.axes import Axes
 from evenfire.appraisal.results import AlternativeResult, Appraisal
 from evenfire.demand.series import DemandRecord, FloatArray
 from evenfire.demand.statistics import load_duration_curve
-from evenfire.report.figures_paper import BLUE, FAINT, INK, LINES, SKY, VERMILION, Drawing, drawing, label
+from evenfire.report.figures_paper import BLUE, INK, MARKERS, SKY, VERMILION, Drawing, drawing, label
 from evenfire.report.formats import number, short
 from evenfire.units import KG_PER_TONNE, SECONDS_PER_HOUR, kg_s_to_t_h
 
@@ -87,18 +87,21 @@ def storage_need_drawing(appraisal: Appraisal) -> Drawing:
     storage = need.storage_kg / KG_PER_TONNE
     planned = [each for each in appraisal.alternatives if each.planned]
     points = [(each.name, firm_capacity_t_h(each), steam_capacity_t(each)) for each in planned]
-    left = max(float(capacity[0]), 0.75 * min([x for _, x, _ in points], default=0.0))
+    smallest = min((x for _, x, _ in points), default=float(capacity[0]))
+    left = min(0.97 * smallest, max(float(capacity[0]), 0.8 * smallest))
     right = 1.04 * max([float(capacity[-1]), *(x for _, x, _ in points)])
-    at_left = float(np.interp(left, capacity, storage))
-    top = 1.12 * max(at_left, *(y for _, _, y in points), 1e-3) if points else max(at_left, 1e-3)
+    needs = [float(np.interp(x, capacity, storage)) for _, x, _ in points]
+    top = 1.5 * max([*needs, *(y for _, _, y in points)], default=0.0) or float(storage[0]) or 1.0
 
     def draw(panels: Sequence[Axes]) -> None:
         axes = panels[0]
         line_x, line_y = np.append(capacity, right), np.append(storage, 0.0)
-        axes.fill_between(line_x, line_y, color=VERMILION, alpha=0.13, linewidth=0)
+        axes.fill_between(
+            line_x, line_y, color=VERMILION, alpha=0.15, linewidth=0, label="here some peak is not met"
+        )
         axes.plot(line_x, line_y, color=INK, linewidth=1.4, label="storage the record needs")
         for at, (name, x, y) in enumerate(points):
-            colour, marker, _ = LINES[at % len(LINES)]
+            colour, marker = MARKERS[at % len(MARKERS)]
             axes.plot(
                 x,
                 y,
@@ -112,14 +115,6 @@ def storage_need_drawing(appraisal: Appraisal) -> Drawing:
                 linestyle="none",
                 label=label(name),
             )
-        axes.text(
-            left + 0.02 * (right - left),
-            0.04 * top,
-            "below the line: some peak is not met",
-            color=FAINT,
-            fontsize=8.5,
-            style="italic",
-        )
         axes.set_xlim(left, right)
         axes.set_ylim(0.0, top)
         axes.set_xlabel("rating of all boilers of the alternative [t/h]")

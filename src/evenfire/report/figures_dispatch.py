@@ -18,7 +18,8 @@ from evenfire.report.figures_paper import (
     BLUE,
     FAINT,
     FILLS,
-    GREEN,
+    FROM_VESSEL,
+    NOT_MET,
     VERMILION,
     Drawing,
     drawing,
@@ -36,8 +37,6 @@ STATES: tuple[tuple[str, str, str], ...] = (
     ("firing", "#4a5a63", ""),
 )
 """State, colour and hatch."""
-FROM_VESSEL = (GREEN, "\\\\\\\\", "#ffffff")
-NOT_MET = (VERMILION, "xxxx", "#ffffff")
 PEAK_HOURS = 3.0
 ATMOSPHERE_BAR = ATMOSPHERE_PA / PA_PER_BAR
 

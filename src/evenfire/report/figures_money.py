@@ -8,8 +8,11 @@ import numpy as np
 from matplotlib.axes import Axes
 
 from evenfire.appraisal.results import AlternativeResult, Appraisal
-from evenfire.report.figures_paper import FILLS, INK, Drawing, drawing, label
+from evenfire.report.figures_paper import FILLS, INK, NOT_MET, Drawing, drawing, label
 from evenfire.report.formats import thousands
+
+UNMET_LINE = "unmet steam"
+"""This cost line has the colour that unmet steam has in every figure."""
 
 
 def cost_line_names(alternatives: Sequence[AlternativeResult]) -> tuple[str, ...]:
@@ -30,7 +33,7 @@ def money_drawing(appraisal: Appraisal) -> Drawing:
         axes = panels[0]
         above, below = np.zeros(len(planned)), np.zeros(len(planned))
         for order, at in enumerate(shown_lines):
-            colour, hatch, line = FILLS[order % len(FILLS)]
+            colour, hatch, line = NOT_MET if names[at] == UNMET_LINE else FILLS[order % len(FILLS)]
             start = np.where(amounts[at] >= 0.0, above, below)
             axes.barh(
                 places,

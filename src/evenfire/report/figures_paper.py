@@ -26,22 +26,24 @@ FILLS: tuple[tuple[str, str, str], ...] = (
     (YELLOW, "|||", "#8a8420"),
     (PURPLE, "\\\\\\", "#ffffff"),
     ("#8d999d", "", "#ffffff"),
-    (GREEN, "xxx", "#ffffff"),
     ("#dfe3e0", "---", FAINT),
-    (VERMILION, "+++", "#ffffff"),
     ("#7d5a3c", "||", "#ffffff"),
+    ("#f2c9a1", "\\\\", FAINT),
+    ("#1f3a4d", "xxx", "#ffffff"),
 )
 """Colour, hatch and colour of the hatch of one thing after another; grey print tells them apart too."""
-LINES: tuple[tuple[str, str, str], ...] = (
-    (BLACK, "o", "-"),
-    (BLUE, "s", "--"),
-    (VERMILION, "^", "-."),
-    (GREEN, "D", ":"),
-    (PURPLE, "v", "-"),
-    (ORANGE, "P", "--"),
-    (SKY, "X", "-."),
+FROM_VESSEL = (GREEN, "\\\\\\\\", "#ffffff")
+NOT_MET = (VERMILION, "xxxx", "#ffffff")
+MARKERS = (
+    (BLACK, "o"),
+    (BLUE, "s"),
+    (VERMILION, "^"),
+    (GREEN, "D"),
+    (PURPLE, "v"),
+    (ORANGE, "P"),
+    (SKY, "X"),
 )
-"""Colour, marker and line style of one alternative after another."""
+"""Colour and marker of one alternative after another."""
 
 WIDTH_INCHES = 7.6
 LONGEST_LABEL = 24

@@ -17,7 +17,7 @@ SECTION_TITLES = {
     "plan": "Plan",
     "vessel": "Accumulator on offer",
 }
-ORIGIN_WORDS = {"assumed": "assumed by the program", "note": "remark", "warning": "warning"}
+ORIGIN_WORDS = {"assumed": "assumed", "note": "remark", "warning": "warning"}
 
 
 def record_table(appraisal: Appraisal) -> Table:
@@ -153,7 +153,11 @@ def files_table(appraisal: Appraisal) -> Table:
 
 
 def _input_row(quantity: Quantity) -> tuple[str, str, str]:
-    return (quantity.words, _shown(quantity), "" if quantity.unit == "1" else quantity.unit)
+    return (
+        quantity.words,
+        _shown(quantity),
+        "" if quantity.unit == "1" else quantity.unit.replace(" ", "\u00a0"),
+    )
 
 
 def _head(quantity: Quantity, currency: str) -> str:
@@ -162,7 +166,12 @@ def _head(quantity: Quantity, currency: str) -> str:
 
 
 def _shown(quantity: Quantity, significant: int = 6) -> str:
-    value = quantity.value
-    if value is None:
-        return MISSING
-    return value if isinstance(value, str) else plain(value, significant)
+    match quantity.value:
+        case None:
+            return MISSING
+        case str() as words:
+            return words
+        case tuple() as several:
+            return ", ".join(words.replace(" ", "\u00a0") for words in several)
+        case value:
+            return plain(value, significant)

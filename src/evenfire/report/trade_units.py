@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from evenfire.appraisal.results import Appraisal
 from evenfire.case.case import BoilerOffer, Case
 from evenfire.money.terms import Price
-from evenfire.report.formats import number
+from evenfire.report.formats import number, plain
 from evenfire.units import (
     J_PER_KWH,
     J_PER_MWH,
@@ -32,7 +32,7 @@ class Quantity:
 
     key: str
     words: str
-    value: float | str | None
+    value: float | str | tuple[str, ...] | None
     """None where there is no such number."""
     unit: str = ""
 
@@ -253,8 +253,8 @@ def _vessel(case: Case) -> tuple[Quantity, ...]:
     if offer is None:
         return ()
     rules, currency = offer.rules, case.finance.currency
-    windows = ", ".join(
-        f"{pa_to_bar_g(window.charged_pa):.3g} to {pa_to_bar_g(window.discharged_pa):.3g}"
+    windows = tuple(
+        f"{plain(pa_to_bar_g(window.charged_pa))} to {plain(pa_to_bar_g(window.discharged_pa))}"
         for window in offer.windows
     )
     return (
