@@ -16,7 +16,6 @@ class ExitStatus(IntEnum):
     DONE = 0
     DEFECT = 1
     REFUSED = 2
-    INFEASIBLE = 3
     GAP_MISSED = 4
     REPLAY_REFUSED = 5
     INTERRUPTED = 130
@@ -87,8 +86,6 @@ class OutputError(EvenfireError):
 
 class InfeasibleError(EvenfireError):
     """No plant that the case allows can do what it asks."""
-
-    exit_status = ExitStatus.INFEASIBLE
 
 
 def out_of_range(code: str, name: str, value: float, unit: str, low: float, high: float) -> OutOfRangeError:

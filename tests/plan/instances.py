@@ -81,6 +81,4 @@ def instances(draw: st.DrawFn) -> Instance:
 
 def solved_whole(instance: Instance, gap: float = 1e-7) -> MilpResult:
     """The instance's mixed-integer model handed whole to HiGHS."""
-    return solve(
-        compiled(alternative_model(instance.inputs, instance.rules)), gap=gap, time_limit_s=60.0
-    )
+    return solve(compiled(alternative_model(instance.inputs, instance.rules)), gap=gap, time_limit_s=60.0)

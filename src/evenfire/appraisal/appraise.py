@@ -23,6 +23,10 @@ from evenfire.plan.outcome import Has, Plan, PlanOutcome, Stop, Watcher
 _PACKAGES = ("evenfire", "pyomo", "highspy", "numpy", "pandas", "CoolProp", "numba", "scipy")
 
 
+_LEAST_SHORTFALL_T = 0.05
+"""Shortfalls below this are rounding [t]."""
+
+
 def appraise(case: Case, watch: Watcher | None = None) -> Appraisal:
     """Plan every alternative of a case and say which is cheapest.
 
@@ -152,7 +156,18 @@ def _no_reference(case: Case, outcomes: tuple[PlanOutcome, ...]) -> InfeasibleEr
 def _notices(results: tuple[AlternativeResult, ...]) -> tuple[Notice, ...]:
     notices = []
     for result in results:
-        if result.planned and result.record_shortfall_t > 0:
+        if result.planned and len(result.boilers) == 1:
+            notices.append(
+                Notice(
+                    code="N202",
+                    severity="warning",
+                    text=(
+                        f"{result.name}: one boiler alone supplies the site; nothing makes steam while it "
+                        "stands for inspection or repair"
+                    ),
+                )
+            )
+        if result.planned and result.record_shortfall_t >= _LEAST_SHORTFALL_T:
             notices.append(
                 Notice(
                     code="N201",

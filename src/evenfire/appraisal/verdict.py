@@ -15,7 +15,7 @@ def best_of(results: tuple[AlternativeResult, ...]) -> AlternativeResult:
 
 def plant_words(result: AlternativeResult) -> str:
     """The plant of an alternative in words."""
-    parts = [boiler.name for boiler in result.boilers]
+    parts = [f"“{boiler.name}”" for boiler in result.boilers]
     if result.vessel is not None:
         vessel = result.vessel
         charged, discharged = (
@@ -25,7 +25,9 @@ def plant_words(result: AlternativeResult) -> str:
             f"a steam accumulator of {vessel.volume_m3:.0f} m³ "
             f"between {charged:.1f} and {discharged:.1f} bar g"
         )
-    return " with ".join([", ".join(parts[:-1]), parts[-1]]) if len(parts) > 1 else parts[0]
+    if not parts:
+        return "no boiler at all"
+    return " and ".join([", ".join(parts[:-1]), parts[-1]]) if len(parts) > 1 else parts[0]
 
 
 def fuel_price_range(
@@ -58,45 +60,41 @@ def _fuel_cost(result: AlternativeResult) -> float:
 
 
 def verdict_words(case: Case, results: tuple[AlternativeResult, ...], best: AlternativeResult) -> str:
-    """The verdict."""
+    """The verdict in two sentences."""
     currency = case.finance.currency
     cost = best.net_present_cost or 0.0
     twins = [x.name for x in results if x is not best and _same_plant(x, best)]
-    same = f" (the same plant as '{twins[0]}')" if twins else ""
-    words = [
-        f"'{best.name}'{same} has the least net present cost: {cost:,.0f} {currency} over "
-        f"{case.finance.horizon_years} years with {plant_words(best)}"
-    ]
+    same = f" (the same plant as “{twins[0]}”)" if twins else ""
+    first = (
+        f"“{best.name}”{same}, with {plant_words(best)}, has the least net present cost: "
+        f"{cost / 1000:,.0f} thousand {currency} over {case.finance.horizon_years} years"
+    )
     reference = next(x for x in results if x.name == case.plan.reference)
     if reference is best:
-        words[0] += "; no planned change earns its cost."
+        first += "; no planned change earns its cost."
     else:
         saving = best.net_present_saving or 0.0
-        words[0] += f", {saving:,.0f} {currency} less than '{reference.name}'."
+        first += f", {saving / 1000:,.0f} thousand less than “{reference.name}”."
+    others = tuple(x for x in results if x.name not in twins)
+    price_words = _range_words(case, *fuel_price_range(case, others, best))
     rival = _nearest_rival(results, best, twins)
-    if rival is not None and rival.net_present_cost is not None:
-        margin = rival.net_present_cost - cost
-        words.append(f"The next one is '{rival.name}', {margin:,.0f} {currency} dearer")
-        if rival.bound is not None and rival.bound < cost:
-            words[-1] += "; the proven bounds do not exclude that it is the cheaper one"
-        words[-1] += "."
-    low, high = fuel_price_range(case, tuple(x for x in results if x.name not in twins), best)
-    words.append(_range_words(case, low, high))
-    return " ".join(words)
+    if rival is None or rival.net_present_cost is None:
+        return first
+    second = f"Next is “{rival.name}”, {(rival.net_present_cost - cost) / 1000:,.0f} thousand dearer"
+    if rival.bound is not None and rival.bound < cost:
+        second += ", though the proven bounds do not exclude that it is cheaper"
+    return f"{first} {second}; {price_words}, with every plant as planned here."
 
 
 def _range_words(case: Case, low: float, high: float) -> str:
     unit = f"{case.finance.currency}/MWh ({'gross' if case.fuel_price_basis == 'hhv' else 'net'})"
-    plants = "with every plant as planned here"
     if high == float("inf"):
-        return (
-            f"This order holds at any fuel price, {plants}."
-            if low <= 0
-            else f"It stays the cheapest at fuel prices above {low:,.0f} {unit}, {plants}."
-        )
+        if low <= 0:
+            return "the first place holds at any fuel price"
+        return f"the first place holds at fuel prices above {low:,.0f} {unit}"
     if low <= 0:
-        return f"It stays the cheapest at fuel prices below {high:,.0f} {unit}, {plants}."
-    return f"It stays the cheapest at fuel prices from {low:,.0f} to {high:,.0f} {unit}, {plants}."
+        return f"the first place holds at fuel prices below {high:,.0f} {unit}"
+    return f"the first place holds at fuel prices from {low:,.0f} to {high:,.0f} {unit}"
 
 
 def _same_plant(first: AlternativeResult, second: AlternativeResult) -> bool:

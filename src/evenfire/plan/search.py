@@ -32,13 +32,13 @@ from evenfire.plan.tables import mode_costs_k_h
 
 FloatArray = NDArray[np.float64]
 
-_QUANTA_T_PER_H = (0.25, 0.125, 0.0625, 0.03125)
+_QUANTA_T_PER_H = (0.25, 0.125, 0.0625, 0.03125, 0.015625)
 """Wanted quantum per hour of step, from rough to fine bounds [t/h]."""
-_EXPECTED_LOSS = (4e-3, 1e-3, 4e-4, 2e-4)
+_EXPECTED_LOSS = (4e-3, 1e-3, 4e-4, 2e-4, 1e-4)
 """What a bound at each quantum usually loses of the cost: decides whether to refine it or to split."""
 _NARROWEST_M3 = 0.25
 _THREADS = 2
-_MOST_STATES = (1, 64, 64, 64)
+_MOST_STATES = (1, 64, 64, 64, 64)
 """Joint burner states told apart at each quantum; 1 leaves minimum times out of the bound."""
 
 
