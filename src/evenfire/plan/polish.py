@@ -13,8 +13,9 @@ from typing import Any
 import highspy
 import numpy as np
 from numpy.typing import NDArray
+from scipy.sparse import coo_array
 
-from evenfire.plan.inputs import PlanBoiler, PlanInputs, VesselSegment
+from evenfire.plan.inputs import PlanBoiler, PlanDay, PlanInputs, VesselSegment
 from evenfire.plan.outcome import DayDispatch, Plan
 from evenfire.plan.quiet import QuietHighs
 from evenfire.plan.tables import mode_costs_k_h, start_cost_k
@@ -22,6 +23,8 @@ from evenfire.plan.translate import burner_starts
 
 FloatArray = NDArray[np.float64]
 IntArray = NDArray[np.int64]
+
+_FIXED_M3 = 1e-9
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -64,8 +67,6 @@ class _Builder:
         self.rows += count
 
     def programme(self) -> highspy.HighsLp:
-        from scipy.sparse import coo_array
-
         rows, columns, values = (np.concatenate(part) for part in zip(*self.entries, strict=True))
         matrix = coo_array((values, (rows, columns)), shape=(self.rows, self.columns)).tocsc()
         lp = highspy.HighsLp()
@@ -113,104 +114,171 @@ def polished(
     Plan or None
         None where the states admit no feasible levels.
     """
+    low, high = volume_range_m3
+    if segment_index is None or high - low <= _FIXED_M3:
+        # With the volume fixed nothing joins the days: each is a programme of its own.
+        parts = [
+            _solved_days(inputs, boilers, segment_index, volume_range_m3, (day,), (fixed,))
+            for day, fixed in zip(inputs.days, days, strict=True)
+        ]
+    else:
+        parts = [_solved_days(inputs, boilers, segment_index, volume_range_m3, inputs.days, days)]
+    if any(part is None for part in parts):
+        return None
+    kept = [part for part in parts if part is not None]
+    return Plan(
+        boilers=tuple(boiler.name for boiler in boilers),
+        segment=segment_index,
+        volume_m3=kept[0][0],
+        dispatch=tuple(dispatch for _, dispatches in kept for dispatch in dispatches),
+    )
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class _DayColumns:
+    """Where one day's variables stand in the programme, and what its states give in any case."""
+
+    base_t_h: list[FloatArray]
+    """Least output of each boiler's mode by step."""
+    pieces: list[list[IntArray]]
+    """Columns of the output above it, per boiler and piece."""
+    unmet: IntArray
+    vented: IntArray
+    vessel: tuple[IntArray, IntArray, IntArray] | None
+    """Stored, charge, discharge."""
+
+
+def _solved_days(
+    inputs: PlanInputs,
+    boilers: tuple[PlanBoiler, ...],
+    segment_index: int | None,
+    volume_range_m3: tuple[float, float],
+    days: tuple[PlanDay, ...],
+    fixed: tuple[FixedDay, ...],
+) -> tuple[float, list[DayDispatch]] | None:
+    """Volume and dispatch of some days, optimal for their states."""
     segment = None if segment_index is None else inputs.vessel_segments[segment_index]
-    pressure = 0 if segment is None else segment.pressure
     build = _Builder()
-    step, rates = inputs.step_h, inputs.rates
     volume: IntArray | None = None
     if segment is not None:
         _, price = _affine(segment.fixed_cost_k, segment)
         volume = build.add_columns(1, price, volume_range_m3[0], volume_range_m3[1])
-    handles = []
-    for day, fixed in zip(inputs.days, days, strict=True):
-        steps = len(day.demand_t_h)
-        weight = day.days_per_year * step
-        base = np.zeros(steps)
-        terms: list[tuple[IntArray, Any]] = []
-        made: list[list[tuple[NDArray[np.bool_], IntArray]]] = []
-        outputs: list[FloatArray] = []
-        for row, boiler in enumerate(boilers):
-            boiler_base = np.zeros(steps)
-            pieces: list[tuple[NDArray[np.bool_], IntArray]] = []
-            count = max(len(mode.output_t_h) for mode in boiler.modes) - 1
-            widths, slopes = np.zeros((count, steps)), np.zeros((count, steps))
-            for k, mode in enumerate(boiler.modes):
-                at = fixed.mode[row] == k
-                if not at.any():
-                    continue
-                output, cost = mode_costs_k_h(boiler, mode, pressure, rates)
-                boiler_base[at] = output[0]
-                for i, ((q0, q1), (c0, c1)) in enumerate(zip(pairwise(output), pairwise(cost), strict=True)):
-                    widths[i, at] = q1 - q0
-                    slopes[i, at] = (c1 - c0) / (q1 - q0)
-            for i in range(count):
-                column = build.add_columns(steps, weight * slopes[i], 0.0, widths[i])
-                terms.append((column, 1.0))
-                pieces.append((widths[i] > 0, column))
-            base += boiler_base
-            outputs.append(boiler_base)
-            made.append(pieces)
-            _add_ramp(build, boiler, fixed.mode[row], boiler_base, [column for _, column in pieces])
-        unmet = build.add_columns(steps, weight * rates.unmet_k_t, 0.0, day.demand_t_h)
-        vented = build.add_columns(steps, 0.0, 0.0, sum(boiler.rated_t_h for boiler in boilers))
-        terms += [(unmet, 1.0), (vented, -1.0)]
-        stored = charge = discharge = None
-        if segment is not None and volume is not None:
-            capacity, per_capacity = _affine(segment.capacity_t, segment)
-            release, per_release = _affine(segment.release_t_h, segment)
-            loss, per_loss = _affine(segment.loss_t_h, segment)
-            stored = build.add_columns(steps, 0.0, 0.0, segment.capacity_t[1])
-            credit = rates.fuel_k_mwh * segment.charging_credit_mwh_t
-            most_charge = sum(boiler.rated_t_h for boiler in boilers)
-            charge = build.add_columns(
-                steps, -weight * credit, 0.0, np.where(fixed.charging, most_charge, 0.0)
-            )
-            discharge = build.add_columns(
-                steps, 0.0, 0.0, np.where(fixed.charging, 0.0, segment.release_t_h[1])
-            )
-            terms += [(discharge, 1.0), (charge, -1.0)]
-            build.add_rows(-np.inf, capacity, steps, (stored, 1.0), (volume, -per_capacity))
-            build.add_rows(-np.inf, release, steps, (discharge, 1.0), (volume, -per_release))
-            build.add_rows(
-                -step * loss,
-                -step * loss,
-                steps,
-                (np.roll(stored, -1), 1.0),
-                (stored, -1.0),
-                (charge, -step),
-                (discharge, step),
-                (volume, step * per_loss),
-            )
-        build.add_rows(day.demand_t_h - base, day.demand_t_h - base, steps, *terms)
-        handles.append((outputs, made, unmet, vented, stored, charge, discharge))
+    columns = [
+        _add_day(build, inputs, boilers, segment, volume, day, states)
+        for day, states in zip(days, fixed, strict=True)
+    ]
     solution = _solved(build.programme())
     if solution is None:
         return None
-    zeros = [np.zeros(len(day.demand_t_h)) for day in inputs.days]
-    dispatch = []
-    for d, (outputs, made, unmet, vented, stored, charge, discharge) in enumerate(handles):
-        rows = [
-            base + sum((solution[column] for _, column in pieces), np.zeros_like(base))
-            for base, pieces in zip(outputs, made, strict=True)
-        ]
-        dispatch.append(
-            DayDispatch(
-                in_service=np.array(days[d].in_service),
-                mode=days[d].mode,
-                output_t_h=np.array(rows).reshape(len(boilers), len(unmet)),
-                start=burner_starts(boilers, days[d].mode),
-                stored_t=zeros[d] if stored is None else solution[stored],
-                charge_t_h=zeros[d] if charge is None else solution[charge],
-                discharge_t_h=zeros[d] if discharge is None else solution[discharge],
-                unmet_t_h=solution[unmet],
-                vented_t_h=solution[vented],
-            )
-        )
-    return Plan(
-        boilers=tuple(boiler.name for boiler in boilers),
-        segment=segment_index,
-        volume_m3=0.0 if volume is None else float(solution[volume[0]]),
-        dispatch=tuple(dispatch),
+    chosen = 0.0 if volume is None else float(solution[volume[0]])
+    return chosen, [
+        _dispatch(boilers, states, place, solution) for states, place in zip(fixed, columns, strict=True)
+    ]
+
+
+def _add_day(
+    build: _Builder,
+    inputs: PlanInputs,
+    boilers: tuple[PlanBoiler, ...],
+    segment: VesselSegment | None,
+    volume: IntArray | None,
+    day: PlanDay,
+    fixed: FixedDay,
+) -> _DayColumns:
+    """Outputs, unmet and vented steam, vessel and balance of one day."""
+    rates = inputs.rates
+    pressure = 0 if segment is None else segment.pressure
+    steps = len(day.demand_t_h)
+    weight = day.days_per_year * inputs.step_h
+    terms: list[tuple[IntArray, Any]] = []
+    bases: list[FloatArray] = []
+    pieces: list[list[IntArray]] = []
+    for row, boiler in enumerate(boilers):
+        base = np.zeros(steps)
+        count = max(len(mode.output_t_h) for mode in boiler.modes) - 1
+        widths, slopes = np.zeros((count, steps)), np.zeros((count, steps))
+        for k, mode in enumerate(boiler.modes):
+            at = fixed.mode[row] == k
+            if not at.any():
+                continue
+            output, cost = mode_costs_k_h(boiler, mode, pressure, rates)
+            base[at] = output[0]
+            for i, ((q0, q1), (c0, c1)) in enumerate(zip(pairwise(output), pairwise(cost), strict=True)):
+                widths[i, at] = q1 - q0
+                slopes[i, at] = (c1 - c0) / (q1 - q0)
+        own = [build.add_columns(steps, weight * slopes[i], 0.0, widths[i]) for i in range(count)]
+        terms += [(column, 1.0) for column in own]
+        bases.append(base)
+        pieces.append(own)
+        _add_ramp(build, boiler, fixed.mode[row], base, own)
+    unmet = build.add_columns(steps, weight * rates.unmet_k_t, 0.0, day.demand_t_h)
+    vented = build.add_columns(steps, 0.0, 0.0, sum(boiler.rated_t_h for boiler in boilers))
+    terms += [(unmet, 1.0), (vented, -1.0)]
+    vessel = None
+    if segment is not None and volume is not None:
+        vessel = _add_vessel(build, inputs, boilers, segment, volume, weight, fixed)
+        terms += [(vessel[2], 1.0), (vessel[1], -1.0)]
+    left = day.demand_t_h - sum(bases, np.zeros(steps))
+    build.add_rows(left, left, steps, *terms)
+    return _DayColumns(base_t_h=bases, pieces=pieces, unmet=unmet, vented=vented, vessel=vessel)
+
+
+def _add_vessel(
+    build: _Builder,
+    inputs: PlanInputs,
+    boilers: tuple[PlanBoiler, ...],
+    segment: VesselSegment,
+    volume: IntArray,
+    weight: float,
+    fixed: FixedDay,
+) -> tuple[IntArray, IntArray, IntArray]:
+    """Stored steam and flows of one day within the vessel's limits, linear in its volume."""
+    step, steps = inputs.step_h, len(fixed.charging)
+    capacity, per_capacity = _affine(segment.capacity_t, segment)
+    release, per_release = _affine(segment.release_t_h, segment)
+    loss, per_loss = _affine(segment.loss_t_h, segment)
+    credit = inputs.rates.fuel_k_mwh * segment.charging_credit_mwh_t
+    most_charge = sum(boiler.rated_t_h for boiler in boilers)
+    stored = build.add_columns(steps, 0.0, 0.0, segment.capacity_t[1])
+    charge = build.add_columns(steps, -weight * credit, 0.0, np.where(fixed.charging, most_charge, 0.0))
+    discharge = build.add_columns(steps, 0.0, 0.0, np.where(fixed.charging, 0.0, segment.release_t_h[1]))
+    build.add_rows(-np.inf, capacity, steps, (stored, 1.0), (volume, -per_capacity))
+    build.add_rows(-np.inf, release, steps, (discharge, 1.0), (volume, -per_release))
+    build.add_rows(
+        -step * loss,
+        -step * loss,
+        steps,
+        (np.roll(stored, -1), 1.0),
+        (stored, -1.0),
+        (charge, -step),
+        (discharge, step),
+        (volume, step * per_loss),
+    )
+    return stored, charge, discharge
+
+
+def _dispatch(
+    boilers: tuple[PlanBoiler, ...], fixed: FixedDay, place: _DayColumns, solution: FloatArray
+) -> DayDispatch:
+    """One day's dispatch read from a solution."""
+    steps = len(place.unmet)
+    output = np.zeros((len(boilers), steps))
+    for row, (base, own) in enumerate(zip(place.base_t_h, place.pieces, strict=True)):
+        output[row] = base + sum((solution[column] for column in own), np.zeros(steps))
+    zeros = np.zeros(steps)
+    stored, charge, discharge = (
+        (zeros, zeros, zeros) if place.vessel is None else (solution[column] for column in place.vessel)
+    )
+    return DayDispatch(
+        in_service=np.array(fixed.in_service),
+        mode=fixed.mode,
+        output_t_h=output,
+        start=burner_starts(boilers, fixed.mode),
+        stored_t=stored,
+        charge_t_h=charge,
+        discharge_t_h=discharge,
+        unmet_t_h=solution[place.unmet],
+        vented_t_h=solution[place.vented],
     )
 
 
