@@ -23,7 +23,7 @@ class LoadPoint(Section):
             "%",
             "Heat into steam over heat in fuel, casing loss included, blowdown excluded; on the boiler's"
             " calorific_basis. On net calorific value it cannot exceed 100 %.",
-            above=0.0,
+            at_least=10.0,
             at_most=100.0,
         ),
     ]
