@@ -105,7 +105,7 @@ REFUSALS = [
     pytest.param(
         ("load_percent = 25, efficiency_percent = 89.0", "load_percent = 25, efficiency_percent = 109.0"),
         "case.toml: boiler 'Boiler 1, 5 t/h', efficiency_points[0].efficiency_percent: found 109 %;"
-        " must be a number above 0 and at most 100 % [C106]",
+        " must be a number from 10 to 100 % [C106]",
         id="efficiency above 100 %",
     ),
     pytest.param(
