@@ -35,6 +35,8 @@ class FixedDay:
     mode: IntArray
     """Mode index, -1 when cold, shape (boilers, steps)."""
     charging: NDArray[np.bool_]
+    start_t: float | None = None
+    """Stored steam at the start of the day, where days must join; else the day chooses its own."""
 
 
 class _Builder:
@@ -239,7 +241,10 @@ def _add_vessel(
     loss, per_loss = _affine(segment.loss_t_h, segment)
     credit = inputs.rates.fuel_k_mwh * segment.charging_credit_mwh_t
     most_charge = sum(boiler.rated_t_h for boiler in boilers)
-    stored = build.add_columns(steps, 0.0, 0.0, segment.capacity_t[1])
+    least, most = np.zeros(steps), np.full(steps, segment.capacity_t[1])
+    if fixed.start_t is not None:
+        least[0] = most[0] = fixed.start_t
+    stored = build.add_columns(steps, 0.0, least, most)
     charge = build.add_columns(steps, -weight * credit, 0.0, np.where(fixed.charging, most_charge, 0.0))
     discharge = build.add_columns(steps, 0.0, 0.0, np.where(fixed.charging, 0.0, segment.release_t_h[1]))
     build.add_rows(-np.inf, capacity, steps, (stored, 1.0), (volume, -per_capacity))

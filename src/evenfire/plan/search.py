@@ -10,15 +10,12 @@ from __future__ import annotations
 
 import heapq
 import time
-from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass, field, replace
-from functools import partial
 from itertools import combinations, count
 
 import numpy as np
-from numpy.typing import NDArray
 
-from evenfire.plan.day import NO_STORE, DayProblem, Store, quantum_t
+from evenfire.plan.day import NO_STORE, Store
 from evenfire.plan.inputs import (
     AlternativeRules,
     PlanInputs,
@@ -26,20 +23,14 @@ from evenfire.plan.inputs import (
     WindowCurves,
     window_curves,
 )
+from evenfire.plan.operation import EXPECTED_LOSS, QUANTA_T_PER_H, Operation, Plant
 from evenfire.plan.outcome import Has, Plan, PlanOutcome, Progress, Stop, Watcher
-from evenfire.plan.polish import FixedDay, plan_cost_k, polished
-from evenfire.plan.tables import mode_costs_k_h
+from evenfire.plan.polish import plan_cost_k, polished
+from evenfire.plan.services import Service
 
-FloatArray = NDArray[np.float64]
-
-_QUANTA_T_PER_H = (0.25, 0.125, 0.0625, 0.03125, 0.015625)
-"""Wanted quantum per hour of step, from rough to fine bounds [t/h]."""
-_EXPECTED_LOSS = (4e-3, 1e-3, 4e-4, 2e-4, 1e-4)
-"""What a bound at each quantum usually loses of the cost: decides whether to refine it or to split."""
 _NARROWEST_M3 = 0.25
-_THREADS = 2
-_MOST_STATES = (1, 64, 64, 64, 64)
-"""Joint burner states told apart at each quantum; 1 leaves minimum times out of the bound."""
+_FEWEST_JOINED_DAYS = 13
+"""From this number of days on a plan keeps the volume of a node's middle; its days are polished singly."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -70,14 +61,23 @@ class Search:
     rules : AlternativeRules
     known : tuple of Plan
         Plans of other alternatives; those that these rules allow are starting points.
+    joined : bool
+        Whether the days follow each other as in the record, instead of each being cyclic by itself.
     """
 
-    def __init__(self, inputs: PlanInputs, rules: AlternativeRules, known: tuple[Plan, ...] = ()) -> None:
+    def __init__(
+        self,
+        inputs: PlanInputs,
+        rules: AlternativeRules,
+        known: tuple[Plan, ...] = (),
+        *,
+        joined: bool = False,
+    ) -> None:
         self._inputs = inputs
         self._rules = rules
         self._known = known
         self._windows = window_curves(inputs.vessel_segments)
-        self._bounds: dict[tuple[object, ...], float] = {}
+        self._operation = Operation(inputs, joined=joined)
         self._best = _Incumbent()
         self._begin = time.monotonic()
 
@@ -217,15 +217,15 @@ class Search:
         """The node with a better bound, or its two halves; None marks one that cannot be refined."""
         width_k = self._width_k(node)
         narrow = node.high_m3 - node.low_m3 <= _NARROWEST_M3
-        if node.stage and not narrow and width_k > _EXPECTED_LOSS[node.stage - 1] * node.bound_k:
+        if node.stage and not narrow and width_k > EXPECTED_LOSS[node.stage - 1] * node.bound_k:
             middle = (node.low_m3 + node.high_m3) / 2
             return [
                 replace(node, high_m3=middle, stage=node.stage - 1),
                 replace(node, low_m3=middle, stage=node.stage - 1),
             ]
-        if node.stage == len(_QUANTA_T_PER_H):
+        if node.stage == len(QUANTA_T_PER_H):
             return [None]
-        operation_k, services = self._operation_k(node, node.stage)
+        operation_k, services = self._operation.bound(self._plant(node), node.stage)
         better = replace(
             node,
             bound_k=max(node.bound_k, self._fixed_k(node) + operation_k),
@@ -254,157 +254,28 @@ class Search:
     def _hull_k(self, node: _Node) -> float:
         """Every tonne at the best average cost of any boiler, or not met."""
         inputs = self._inputs
-        pressure = self._pressure(node)
-        credit = self._store(node).credit_k_t if node.window is not None else 0.0
-        rates = [inputs.rates.unmet_k_t]
-        for name in node.boilers:
-            boiler = inputs.boiler(name)
-            for mode in boiler.modes:
-                output, cost = mode_costs_k_h(boiler, mode, pressure, inputs.rates)
-                rates += [float(c / q) for q, c in zip(output, cost, strict=True) if q > 0]
+        plant = self._plant(node)
         steam = sum(day.days_per_year * inputs.step_h * float(day.demand_t_h.sum()) for day in inputs.days)
-        return steam * (min(rates) - max(0.0, credit))
+        least = self._operation.least_steam_cost_k_t(node.boilers, plant.pressure)
+        return steam * (least - max(0.0, plant.store.credit_k_t))
 
-    def _pressure(self, node: _Node) -> int:
-        return 0 if node.window is None else self._windows[node.window].pressure
-
-    def _store(self, node: _Node, *, at_m3: float | None = None) -> Store:
-        """The vessel a bound may assume, or the vessel at one volume."""
+    def _plant(self, node: _Node, *, at_m3: float | None = None) -> Plant:
+        """The plant whose operation bounds a node's, or the plant at one volume."""
         if node.window is None:
-            return NO_STORE
+            return Plant(boilers=node.boilers, pressure=0, store=NO_STORE)
         curves = self._windows[node.window]
         high = node.high_m3 if at_m3 is None else at_m3
         low = node.low_m3 if at_m3 is None else at_m3
-        return Store(
-            capacity_t=curves.at(curves.capacity_t, high),
-            release_t_h=curves.at(curves.release_t_h, high),
-            loss_t_h=curves.at(curves.loss_t_h, low),
-            credit_k_t=self._inputs.rates.fuel_k_mwh * curves.charging_credit_mwh_t,
+        return Plant(
+            boilers=node.boilers,
+            pressure=curves.pressure,
+            store=Store(
+                capacity_t=curves.at(curves.capacity_t, high),
+                release_t_h=curves.at(curves.release_t_h, high),
+                loss_t_h=curves.at(curves.loss_t_h, low),
+                credit_k_t=self._inputs.rates.fuel_k_mwh * curves.charging_credit_mwh_t,
+            ),
         )
-
-    def _problem(
-        self, node: _Node, day: int, service: tuple[str, ...], store: Store, stage: int
-    ) -> DayProblem:
-        inputs = self._inputs
-        boilers = tuple(inputs.boiler(name) for name in service)
-        wanted = _QUANTA_T_PER_H[stage] * inputs.step_h
-        if store.capacity_t == 0.0:
-            wanted /= 8.0
-        return DayProblem(
-            demand_t_h=inputs.days[day].demand_t_h,
-            step_h=inputs.step_h,
-            boilers=boilers,
-            pressure=self._pressure(node),
-            rates=inputs.rates,
-            store=store,
-            quantum_t=quantum_t(boilers, inputs.step_h, wanted),
-            most_states=_MOST_STATES[stage],
-        )
-
-    def _day_bound(self, node: _Node, day: int, service: tuple[str, ...], store: Store, stage: int) -> float:
-        """Least cost of one day with these boilers hot, weighted by its days a year [k]."""
-        key = (day, service, self._pressure(node), store, stage)
-        if key not in self._bounds:
-            problem = self._problem(node, day, service, store, stage)
-            self._bounds[key] = self._inputs.days[day].days_per_year * problem.lower_bound()
-        return self._bounds[key]
-
-    def _missing_bound(
-        self, node: _Node, store: Store, stage: int, which: tuple[int, tuple[str, ...]]
-    ) -> float:
-        return self._day_bound(node, which[0], which[1], store, stage)
-
-    def _operation_k(self, node: _Node, stage: int) -> tuple[float, tuple[tuple[str, ...], ...]]:
-        """Least operating cost over which boilers are hot on which day, with that choice."""
-        store = self._store(node)
-        days = range(len(self._inputs.days))
-        choices = [
-            chosen for size in range(len(node.boilers) + 1) for chosen in combinations(node.boilers, size)
-        ]
-        rough = {
-            (day, service): self._rough_day_k(node, day, service, store)
-            for day in days
-            for service in choices
-        }
-        exact: set[tuple[int, tuple[str, ...]]] = set()
-        while True:
-            total, best = self._best_services(node, choices, rough)
-            missing = [(day, best[day]) for day in days if (day, best[day]) not in exact]
-            if not missing:
-                return total, best
-            with ThreadPoolExecutor(_THREADS) as pool:
-                values = pool.map(partial(self._missing_bound, node, store, stage), missing)
-                for pair, value in zip(missing, values, strict=True):
-                    rough[pair] = max(rough[pair], value)
-                    exact.add(pair)
-
-    def _rough_day_k(self, node: _Node, day: int, service: tuple[str, ...], store: Store) -> float:
-        """A cheap bound on a day: best average cost, and what the boilers cannot make is not met."""
-        inputs = self._inputs
-        demand = inputs.days[day].demand_t_h
-        most = sum(inputs.boiler(name).rated_t_h for name in service)
-        energy = float(demand.sum()) * inputs.step_h
-        short = max(0.0, energy - most * len(demand) * inputs.step_h)
-        rates = [inputs.rates.unmet_k_t]
-        for name in service:
-            boiler = inputs.boiler(name)
-            for mode in boiler.modes:
-                output, cost = mode_costs_k_h(boiler, mode, self._pressure(node), inputs.rates)
-                rates += [float(c / q) for q, c in zip(output, cost, strict=True) if q > 0]
-        credit = max(0.0, store.credit_k_t)
-        least = (energy - short) * (min(rates) - credit) + short * (inputs.rates.unmet_k_t - credit)
-        return inputs.days[day].days_per_year * least
-
-    def _best_services(
-        self,
-        node: _Node,
-        choices: list[tuple[str, ...]],
-        day_cost: dict[tuple[int, tuple[str, ...]], float],
-    ) -> tuple[float, tuple[tuple[str, ...], ...]]:
-        """Cheapest set of hot boilers for every day, cold starts between days included."""
-        inputs = self._inputs
-        days = range(len(inputs.days))
-        pressure = self._pressure(node)
-        price = {
-            name: inputs.rates.fuel_k_mwh
-            * inputs.boiler(name).pressure_factor[pressure]
-            * inputs.boiler(name).cold_start_fuel_mwh
-            for name in node.boilers
-        }
-        ranked = [sorted(choices, key=lambda x: day_cost[day, x]) for day in days]
-        least = [day_cost[day, ranked[day][0]] for day in days]
-        rest = [sum(least[day:]) for day in range(len(least) + 1)]
-        best_total, best = float("inf"), tuple(order[0] for order in ranked)
-
-        def between(earlier: tuple[tuple[str, ...], ...], service: tuple[str, ...]) -> float:
-            day = len(earlier)
-            total = 0.0
-            for other, hot in enumerate(earlier):
-                total += inputs.transitions_per_year[other, day] * sum(
-                    price[name] for name in service if name not in hot
-                )
-                total += inputs.transitions_per_year[day, other] * sum(
-                    price[name] for name in hot if name not in service
-                )
-            return float(total)
-
-        def descend(earlier: tuple[tuple[str, ...], ...], paid: float) -> None:
-            nonlocal best_total, best
-            day = len(earlier)
-            if day == len(least):
-                if paid < best_total:
-                    best_total, best = paid, earlier
-                return
-            for service in ranked[day]:
-                cost = paid + day_cost[day, service]
-                if cost + rest[day + 1] >= best_total:
-                    break
-                cost += between(earlier, service)
-                if cost + rest[day + 1] < best_total:
-                    descend((*earlier, service), cost)
-
-        descend((), 0.0)
-        return best_total, best
 
     # --- plans ----------------------------------------------------------------------------------
 
@@ -429,7 +300,7 @@ class Search:
         if cost < self._best.cost_k:
             self._best.plan, self._best.cost_k = plan, cost
 
-    def _try(self, node: _Node, services: tuple[tuple[str, ...], ...]) -> None:
+    def _try(self, node: _Node, services: tuple[Service, ...]) -> None:
         """Make a plan near a node and keep it if it is the best so far."""
         inputs = self._inputs
         volume = (node.low_m3 + node.high_m3) / 2
@@ -437,30 +308,18 @@ class Search:
         if key in self._best.tried:
             return
         self._best.tried.add(key)
-        boilers = tuple(inputs.boiler(name) for name in node.boilers)
-        store = self._store(node, at_m3=volume)
-        days = []
-        for day, service in enumerate(services):
-            schedule = self._problem(node, day, service, store, 1).schedule()
-            if schedule is None:
-                return
-            mode = np.full((len(boilers), len(inputs.days[day].demand_t_h)), -1, dtype=np.int64)
-            for row, boiler in enumerate(boilers):
-                if boiler.name in service:
-                    mode[row] = schedule.mode[service.index(boiler.name)]
-            days.append(
-                FixedDay(
-                    in_service=tuple(boiler.name in service for boiler in boilers),
-                    mode=mode,
-                    charging=schedule.charging,
-                )
-            )
+        days = self._operation.states(self._plant(node, at_m3=volume), services)
+        if days is None:
+            return
         segment, allowed = None, (0.0, 0.0)
         if node.window is not None:
             curves = self._windows[node.window]
             segment = curves.segment_at(volume)
             low, high = inputs.vessel_segments[segment].volume_m3
             allowed = (max(low, self._smallest_adequate_m3(node.boilers, curves)), high)
-        plan = polished(inputs, boilers, segment, allowed, tuple(days))
+            if len(inputs.days) >= _FEWEST_JOINED_DAYS:
+                allowed = (volume, volume)
+        boilers = tuple(inputs.boiler(name) for name in node.boilers)
+        plan = polished(inputs, boilers, segment, allowed, days)
         if plan is not None:
             self._offer(plan)
