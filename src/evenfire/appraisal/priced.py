@@ -13,6 +13,7 @@ from evenfire.appraisal.results import (
     BoilerUse,
     CostLine,
     DaySchedule,
+    FuelPart,
     Payback,
     Standing,
     VesselChoice,
@@ -23,6 +24,7 @@ from evenfire.appraisal.vessels import (
     table_price,
     vessel_performance,
 )
+from evenfire.boiler import steam_heat_j_kg
 from evenfire.case.case import BoilerOffer, Case
 from evenfire.demand.series import DemandRecord, TypicalDays
 from evenfire.demand.storage_need import shortfall_kg
@@ -31,6 +33,7 @@ from evenfire.money.factors import capital_recovery_factor
 from evenfire.money.payback import payback
 from evenfire.money.terms import YearlyQuantities
 from evenfire.plan.flows import YearlyFlows, yearly_flows
+from evenfire.plan.fuel_parts import fuel_parts
 from evenfire.plan.inputs import PlanInputs
 from evenfire.plan.outcome import DayDispatch, Plan, PlanOutcome, Stop
 from evenfire.units import J_PER_MWH, KG_PER_TONNE, kg_s_to_kg_h, pa_to_bar_abs
@@ -97,6 +100,30 @@ def _stated_mwh(case: Case, fuel_mwh_lhv: float) -> float:
     return fuel_mwh_lhv / case.fuel.lhv_to_hhv if case.fuel_price_basis == "hhv" else fuel_mwh_lhv
 
 
+def blowdown_share(case: Case) -> float:
+    """Heat of the blowdown over all heat the boilers add at today's pressure [1]."""
+    site, blowdown = case.conditions, case.boilers[0].spec.blowdown_fraction
+    steam_alone = steam_heat_j_kg(site.boiler_today_pa, site.feedwater_k, 0.0)
+    return 1.0 - steam_alone / steam_heat_j_kg(site.boiler_today_pa, site.feedwater_k, blowdown)
+
+
+def _fuel_parts(case: Case, flows: YearlyFlows) -> tuple[FuelPart, ...]:
+    parts = fuel_parts(flows, blowdown_share(case))
+    return tuple(
+        FuelPart(name=name, mwh_per_year=float(_stated_mwh(case, mwh)))
+        for name, mwh in (
+            ("steam used", parts.steam),
+            ("blowdown", parts.blowdown),
+            ("standing loss", parts.standing),
+            ("purging at burner starts", parts.purge),
+            ("cold starts", parts.cold_starts),
+            ("standing loss of the vessel", parts.vessel_loss),
+            ("vessel gives more than it takes", parts.vessel_credit),
+            ("higher boiler pressure", parts.boiler_pressure),
+        )
+    )
+
+
 def alternative_result(
     case: Case,
     inputs: PlanInputs,
@@ -136,6 +163,7 @@ def alternative_result(
             for name in cash.lines
         ),
         fuel_mwh_per_year=fuel,
+        fuel_parts=_fuel_parts(case, flows),
         co2_t_per_year=price.quantities.co2_kg / KG_PER_TONNE,
         steam_t_per_year=supplied_t,
         burner_starts_per_year=sum(boiler.burner_starts for boiler in flows.boilers),
@@ -264,6 +292,7 @@ def unplanned_result(outcome: PlanOutcome, reference: Priced) -> AlternativeResu
         investment=0.0,
         cost_lines=(),
         fuel_mwh_per_year=0.0,
+        fuel_parts=(),
         co2_t_per_year=0.0,
         steam_t_per_year=0.0,
         burner_starts_per_year=0.0,

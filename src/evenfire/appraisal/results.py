@@ -44,6 +44,16 @@ class CostLine:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class FuelPart:
+    """What a share of the fuel is burnt for."""
+
+    name: str
+    """In words, e.g. ``standing loss``; the definitions are in docs/physics.md."""
+    mwh_per_year: float
+    """On the case's fuel basis; negative for a saving [MWh/a]."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class BoilerUse:
     """One boiler of the chosen plant and what it does in a year."""
 
@@ -124,6 +134,8 @@ class AlternativeResult:
     """Including contingency, first year only [currency]."""
     cost_lines: tuple[CostLine, ...]
     fuel_mwh_per_year: float
+    fuel_parts: tuple[FuelPart, ...]
+    """By purpose, adding up to ``fuel_mwh_per_year``."""
     co2_t_per_year: float
     steam_t_per_year: float
     burner_starts_per_year: float

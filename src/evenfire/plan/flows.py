@@ -21,8 +21,10 @@ class BoilerFlows:
     steam_t: float
     firing_fuel_mwh: float
     """Net, at today's boiler pressure."""
-    below_turndown_fuel_mwh: float
-    """Cycling and hot standby without the fuel of starts."""
+    cycling_fuel_mwh: float
+    """Burnt below turndown while the burner fires, without the fuel of starts."""
+    standing_fuel_mwh: float
+    """Makes good the standing loss while the hot boiler does not fire: hot standby, pauses of cycling."""
     start_fuel_mwh: float
     """Heat carried off by purging."""
     cold_start_fuel_mwh: float
@@ -37,7 +39,8 @@ class BoilerFlows:
         """All fuel of the boiler, net [MWh/a]."""
         return (
             self.firing_fuel_mwh
-            + self.below_turndown_fuel_mwh
+            + self.cycling_fuel_mwh
+            + self.standing_fuel_mwh
             + self.start_fuel_mwh
             + self.cold_start_fuel_mwh
             + self.pressure_fuel_mwh
@@ -99,8 +102,9 @@ def yearly_flows(inputs: PlanInputs, plan: Plan) -> YearlyFlows:
 
 
 def _boiler_flows(inputs: PlanInputs, plan: Plan, row: int, boiler: PlanBoiler, pressure: int) -> BoilerFlows:
-    steam = firing = below = starts = hours = 0.0
+    steam = firing = below = standing = starts = hours = 0.0
     lowest = min(mode.output_t_h[0] for mode in boiler.modes if mode.name == "firing")
+    standing_mwh_h = standing_fuel_mwh_h(boiler)
     for day, dispatch in zip(inputs.days, plan.dispatch, strict=True):
         weight = day.days_per_year * inputs.step_h
         starts += day.days_per_year * int(dispatch.start[row].sum())
@@ -113,7 +117,9 @@ def _boiler_flows(inputs: PlanInputs, plan: Plan, row: int, boiler: PlanBoiler, 
                 hours += weight * len(made)
             else:
                 below += fuel
-                hours += weight * float(made.sum()) / lowest
+                fired = weight * float(made.sum()) / lowest
+                hours += fired
+                standing += standing_mwh_h * (weight * len(made) - fired)
             rate = np.interp(
                 made,
                 [mode.output_t_h[0], mode.output_t_h[-1]],
@@ -129,10 +135,16 @@ def _boiler_flows(inputs: PlanInputs, plan: Plan, row: int, boiler: PlanBoiler, 
         name=boiler.name,
         steam_t=steam,
         firing_fuel_mwh=firing,
-        below_turndown_fuel_mwh=below,
+        cycling_fuel_mwh=below - standing,
+        standing_fuel_mwh=standing,
         start_fuel_mwh=start_fuel,
         cold_start_fuel_mwh=cold,
         pressure_fuel_mwh=(boiler.pressure_factor[pressure] - 1.0) * (firing + below + start_fuel + cold),
         burner_starts=starts,
         firing_hours=hours,
     )
+
+
+def standing_fuel_mwh_h(boiler: PlanBoiler) -> float:
+    """Fuel that keeps a boiler hot at no output [MWh/h]; 0 for one that cannot stand hot without firing."""
+    return max((mode.fuel_mwh_h[0] for mode in boiler.modes if mode.output_t_h[0] == 0.0), default=0.0)

@@ -112,6 +112,7 @@ def _alternative(result: AlternativeResult) -> dict[str, Any]:
         "boilers": [_boiler(each) for each in result.boilers],
         "vessel": _vessel(vessel) if vessel is not None else None,
         "cost_lines": [_cost_line(each) for each in result.cost_lines],
+        "fuel_parts_mwh_per_year": {part.name: part.mwh_per_year for part in result.fuel_parts},
     }
 
 

@@ -18,6 +18,7 @@ from evenfire.report.page_alternatives import (
     cost_tables,
     gap_table,
     overview_table,
+    fuel_table,
     payback_words,
     standing_sentences,
 )
@@ -100,7 +101,8 @@ def report_page(appraisal: Appraisal) -> str:
         storage_need_table=storage_need_table(appraisal),
         chapters=_chapters(appraisal),
         costs=cost_tables(appraisal),
-        typical_days=typical_days_table(appraisal),
+        fuel_parts=fuel_table(appraisal),
+        typical_days=typical_days_table(appraisal.typical_days),
         typical_days_errors=typical_days_errors(appraisal),
         gaps=gap_table(appraisal),
         inputs=input_tables(appraisal),

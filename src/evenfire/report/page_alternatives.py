@@ -148,6 +148,25 @@ def cost_tables(appraisal: Appraisal) -> tuple[Table, Table]:
     )
 
 
+def fuel_table(appraisal: Appraisal) -> Table:
+    """What every plan burns its fuel for."""
+    planned = tuple(each for each in appraisal.alternatives if each.planned)
+    names = dict.fromkeys(part.name for each in planned for part in each.fuel_parts)
+    shares = {each.name: {part.name: part.mwh_per_year for part in each.fuel_parts} for each in planned}
+    return Table(
+        caption=f"What the fuel of a year is burnt for [MWh/a, {BASIS_WORD[appraisal.fuel_basis]}].",
+        head=("Purpose", *(each.name for each in planned)),
+        groups=(
+            Group(
+                rows=tuple(
+                    (name, *(number(shares[each.name].get(name, 0.0)) for each in planned)) for name in names
+                )
+            ),
+            Group(rows=(("fuel", *(number(each.fuel_mwh_per_year) for each in planned)),), total=True),
+        ),
+    )
+
+
 def vessel_words(vessel: VesselChoice | None) -> str:
     """Size and window of an accumulator in a few words."""
     if vessel is None:
