@@ -16,9 +16,9 @@ from evenfire.report.formats import gap_words, number, thousands
 from evenfire.report.notices import all_notices
 from evenfire.report.page_alternatives import (
     cost_tables,
+    fuel_table,
     gap_table,
     overview_table,
-    fuel_table,
     payback_words,
     standing_sentences,
 )
@@ -102,7 +102,7 @@ def report_page(appraisal: Appraisal) -> str:
         chapters=_chapters(appraisal),
         costs=cost_tables(appraisal),
         fuel_parts=fuel_table(appraisal),
-        typical_days=typical_days_table(appraisal.typical_days),
+        typical_days=typical_days_table(appraisal),
         typical_days_errors=typical_days_errors(appraisal),
         gaps=gap_table(appraisal),
         inputs=input_tables(appraisal),
