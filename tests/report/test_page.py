@@ -152,6 +152,7 @@ def test_assumptions_are_told_apart_from_remarks(page: PageReader) -> None:
     origins = {row[2]: row[1] for row in page.rows if len(row) == 3 and re.fullmatch(r"[A-Z]\d{3}", row[2])}
     assert origins == {
         "C190": "assumed",
+        "R145": "warning",
         "R191": "assumed",
         "R190": "warning",
         "A190": "remark",

@@ -49,6 +49,107 @@ def appraise(
 
 
 @app.command()
+def record(
+    source: Annotated[
+        Path,
+        typer.Argument(
+            metavar="CASE_OR_FILE",
+            help="Case folder, its case.toml, or a bare record file (.csv, .gz, .xlsx, ...).",
+        ),
+    ],
+    out: Annotated[
+        Path | None,
+        typer.Option(metavar="FOLDER", help="Output folder; 'record' beside the case or file unless given."),
+    ] = None,
+    replace: Annotated[bool, typer.Option("--replace", help="Overwrite an existing output folder.")] = False,
+    quiet: Annotated[bool, typer.Option("--quiet", help="Print only problems.")] = False,
+    time_column: Annotated[str | None, typer.Option(help="Column with the time of each step.")] = None,
+    flow_column: Annotated[str | None, typer.Option(help="Column with the flow.")] = None,
+    unit: Annotated[
+        str | None,
+        typer.Option(help="Its unit: kg/h, t/h, lb/h, kg/s, kg, t, lb, kg/step, kW, MW, m3/h, ..."),
+    ] = None,
+    zone: Annotated[
+        str | None, typer.Option(help="Time zone, e.g. Europe/Berlin, or 'fixed' without summer time.")
+    ] = None,
+    clock_column: Annotated[str | None, typer.Option(help="Column of the time of day, if apart.")] = None,
+    sheet: Annotated[str | None, typer.Option(help="Sheet of a workbook.")] = None,
+    header_row: Annotated[int | None, typer.Option(help="Row of the column names.")] = None,
+    delimiter: Annotated[str | None, typer.Option(help="Column delimiter; 'tab' for a tab.")] = None,
+    decimal: Annotated[str | None, typer.Option(help="Decimal sign: . or ,")] = None,
+    encoding: Annotated[str | None, typer.Option(help="Text encoding.")] = None,
+    date_order: Annotated[str | None, typer.Option(help="ymd, dmy or mdy.")] = None,
+    stamp: Annotated[str | None, typer.Option(help="Time stands at the 'start' or 'end' of a step.")] = None,
+    on_change_step_seconds: Annotated[
+        float | None, typer.Option(help="Logged on change: average onto this step.")
+    ] = None,
+    gaps: Annotated[str | None, typer.Option(help="refuse, hold, interpolate or zero.")] = None,
+    largest_gap_minutes: Annotated[float | None, typer.Option(help="Longest gap that may be filled.")] = None,
+    status_column: Annotated[
+        str | None, typer.Option(help="Column that says whether a value is good.")
+    ] = None,
+    good_status: Annotated[list[str] | None, typer.Option(help="A word for good; may be repeated.")] = None,
+    missing_value: Annotated[
+        list[str] | None, typer.Option(help="A cell that means no value; may be repeated.")
+    ] = None,
+    negative_flow: Annotated[str | None, typer.Option(help="refuse or zero.")] = None,
+    counter_rollover: Annotated[
+        float | None, typer.Option(help="Reading after which a counter starts again.")
+    ] = None,
+    heat_kj_per_kg: Annotated[
+        float | None, typer.Option(help="For kW, MW, m3/h: heat per kg of steam, from feedwater.")
+    ] = None,
+    boiler_efficiency_percent: Annotated[
+        float | None, typer.Option(help="For a fuel meter: boiler efficiency on the meter's basis.")
+    ] = None,
+    calorific_value_kwh_per_m3: Annotated[
+        float | None, typer.Option(help="For a gas meter in m3/h: calorific value on the same basis.")
+    ] = None,
+    boilers_kg_h: Annotated[
+        float | None, typer.Option(help="Boiler capacity above which peaks are ranked.")
+    ] = None,
+    step_minutes: Annotated[float | None, typer.Option(help="Step of the typical days.")] = None,
+) -> None:
+    """Say what a record of steam demand is worth, from a case or from a bare data file.
+
+    Writes record.json and record.html into one folder. A bare file needs --time-column, --flow-column and
+    --unit; whatever else the file does not decide by itself is refused with the readings it could have.
+
+    Example: evenfire record steam.csv --time-column time --flow-column steam --unit kg/h --out record
+    """
+    from evenfire.cli.record import FileOptions, run
+
+    options = FileOptions(
+        time_column=time_column,
+        flow_column=flow_column,
+        unit=unit,
+        zone=zone,
+        clock_column=clock_column,
+        sheet=sheet,
+        header_row=header_row,
+        delimiter=delimiter,
+        decimal=decimal,
+        encoding=encoding,
+        date_order=date_order,
+        stamp=stamp,
+        on_change_step_seconds=on_change_step_seconds,
+        gaps=gaps,
+        largest_gap_minutes=largest_gap_minutes,
+        status_column=status_column,
+        good_status=tuple(good_status or ()),
+        missing_value=tuple(missing_value or ()),
+        negative_flow=negative_flow,
+        counter_rollover=counter_rollover,
+        heat_kj_per_kg=heat_kj_per_kg,
+        boiler_efficiency_percent=boiler_efficiency_percent,
+        calorific_value_kwh_per_m3=calorific_value_kwh_per_m3,
+        boilers_kg_h=boilers_kg_h,
+        step_minutes=step_minutes,
+    )
+    raise typer.Exit(run(source, options, out, replace=replace, quiet=quiet))
+
+
+@app.command()
 def schema() -> None:
     """Print the JSON Schema of case.toml, so that an editor can complete and check a case.
 

@@ -15,6 +15,8 @@ LOOKED_AT = 20
 LONGEST_STEP_S = 3600.0
 FEW_STEPS = 4.0
 """Length of peaks in steps below which the logging interval hides a part of them."""
+ROUNDING = 1e-9
+"""Flow this close to a capacity is the capacity in other units [1]."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -83,7 +85,7 @@ def ranked_peaks(record: DemandRecord, capacity_kg_s: float) -> tuple[Peak, ...]
         where = f"{record.source}: capacity above which peaks count"
         raise RecordError(Problem(code="R120", where=where, found=found, allowed=allowed))
     flow = record.flow_kg_s
-    first, after = stretches(flow > capacity_kg_s)
+    first, after = stretches(flow > capacity_kg_s * (1.0 + ROUNDING))
     if first.size == 0:
         return ()
     above = np.concatenate([[0.0], np.cumsum(np.maximum(flow - capacity_kg_s, 0.0))]) * record.step_s

@@ -47,7 +47,7 @@ def document(appraisal: Appraisal) -> dict[str, Any]:
     exist (``payback_note`` says why), a bound that is not finite. Dispatch is in the CSV table.
     """
     case = appraisal.case
-    content: dict[str, Any] = _rounded(
+    content: dict[str, Any] = rounded(
         {
             "schema_version": SCHEMA_VERSION,
             "site": case.name,
@@ -216,12 +216,12 @@ def _notice(notice: Notice) -> dict[str, str]:
     return {"code": notice.code, "severity": notice.severity, "text": notice.text}
 
 
-def _rounded(value: Any) -> Any:
-    """Plain data with floats rounded and ``None`` for those that are not finite."""
+def rounded(value: Any) -> Any:
+    """Plain data with floats rounded to twelve digits and ``None`` for those that are not finite."""
     if isinstance(value, dict):
-        return {key: _rounded(each) for key, each in value.items()}
+        return {key: rounded(each) for key, each in value.items()}
     if isinstance(value, list | tuple):
-        return [_rounded(each) for each in value]
+        return [rounded(each) for each in value]
     if isinstance(value, float):
         return float(f"{value:.{SIGNIFICANT_DIGITS}g}") + 0.0 if math.isfinite(value) else None
     return value

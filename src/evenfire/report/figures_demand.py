@@ -16,14 +16,25 @@ from evenfire.units import KG_PER_TONNE, SECONDS_PER_HOUR, kg_s_to_t_h
 
 BUCKETS = 700
 CURVE_POINTS = 300
+TODAY = "boilers in place today"
 
 
 def record_drawing(appraisal: Appraisal) -> Drawing:
+    """The whole record against the boilers in place."""
+    return course_drawing(
+        appraisal.record, today_capacity_t_h(appraisal), TODAY, "the boilers in place today can make"
+    )
+
+
+def duration_drawing(appraisal: Appraisal) -> Drawing:
+    """Load duration curve of the raw record against the boilers in place."""
+    return curve_drawing(appraisal.record, today_capacity_t_h(appraisal), TODAY)
+
+
+def course_drawing(record: DemandRecord, line_t_h: float, line_words: str, line_sentence: str) -> Drawing:
     """The whole record: lowest, mean and highest step of each short stretch, so no peak is lost."""
-    record = appraisal.record
     lowest, mean, highest, hours = bucketed_t_h(record, BUCKETS)
     times = np.datetime64(record.start, "s") + (hours * SECONDS_PER_HOUR).astype("timedelta64[s]")
-    today = today_capacity_t_h(appraisal)
 
     def draw(panels: Sequence[Axes]) -> None:
         axes = panels[0]
@@ -31,7 +42,7 @@ def record_drawing(appraisal: Appraisal) -> Drawing:
             times, lowest, highest, step="mid", color=SKY, linewidth=0, label="lowest to highest step"
         )
         axes.plot(times, mean, color=BLUE, linewidth=0.9, label="mean of the stretch")
-        axes.axhline(today, color=VERMILION, linewidth=1.2, linestyle="--", label="boilers in place today")
+        axes.axhline(line_t_h, color=VERMILION, linewidth=1.2, linestyle="--", label=line_words)
         axes.set_ylim(bottom=0.0)
         axes.set_xlim(times[0], times[-1])
         axes.set_ylabel("steam demand [t/h]")
@@ -42,18 +53,17 @@ def record_drawing(appraisal: Appraisal) -> Drawing:
         "record",
         "Steam demand as recorded",
         f"Demand over {number(record.days)} days lies between {short(float(lowest.min()))} and "
-        f"{short(float(highest.max()))} t/h; the boilers in place today can make {short(today)} t/h.",
+        f"{short(float(highest.max()))} t/h; {line_sentence} {short(line_t_h)} t/h.",
         (2.7,),
         draw,
     )
 
 
-def duration_drawing(appraisal: Appraisal) -> Drawing:
+def curve_drawing(record: DemandRecord, line_t_h: float, line_words: str) -> Drawing:
     """Load duration curve of the raw record."""
-    curve = load_duration_curve(appraisal.record, CURVE_POINTS)
+    curve = load_duration_curve(record, CURVE_POINTS)
     flow_t_h = curve.flow_kg_s * kg_s_to_t_h(1.0)
-    today = today_capacity_t_h(appraisal)
-    mean = kg_s_to_t_h(float(appraisal.record.flow_kg_s.mean()))
+    mean = kg_s_to_t_h(float(record.flow_kg_s.mean()))
 
     def draw(panels: Sequence[Axes]) -> None:
         axes = panels[0]
@@ -61,7 +71,7 @@ def duration_drawing(appraisal: Appraisal) -> Drawing:
         axes.plot(
             100.0 * curve.share, flow_t_h, color=BLUE, linewidth=1.4, label="demand reached or exceeded"
         )
-        axes.axhline(today, color=VERMILION, linewidth=1.2, linestyle="--", label="boilers in place today")
+        axes.axhline(line_t_h, color=VERMILION, linewidth=1.2, linestyle="--", label=line_words)
         axes.axhline(mean, color=INK, linewidth=1.0, linestyle=":", label="mean demand")
         axes.set_xlim(0.0, 100.0)
         axes.set_ylim(bottom=0.0)

@@ -1,4 +1,4 @@
-"""Writes an appraisal into its folder: whole or not at all, and over nothing that is not its own."""
+"""Writes results into their folder: whole or not at all, and over nothing that is not their own."""
 
 from __future__ import annotations
 
@@ -8,19 +8,25 @@ from collections.abc import Iterator
 from contextlib import contextmanager
 from pathlib import Path
 
+from evenfire.appraisal.record_study import RecordStudy
 from evenfire.appraisal.results import Appraisal
 from evenfire.errors import OutputError, Problem
 from evenfire.report.document import document_text
 from evenfire.report.page import report_page
+from evenfire.report.page_record import record_page
+from evenfire.report.record_document import record_document_text
 from evenfire.report.tables import dispatch_table
 
 DOCUMENT_FILE = "appraisal.json"
 DISPATCH_FILE = "dispatch.csv"
 PAGE_FILE = "report.html"
 OUTPUT_FILES = (DOCUMENT_FILE, DISPATCH_FILE, PAGE_FILE)
+RECORD_DOCUMENT_FILE = "record.json"
+RECORD_PAGE_FILE = "record.html"
+RECORD_FILES = (RECORD_DOCUMENT_FILE, RECORD_PAGE_FILE)
 
 
-def check_output_folder(folder: Path, replace: bool) -> None:
+def check_output_folder(folder: Path, replace: bool, own: tuple[str, ...] = OUTPUT_FILES) -> None:
     """Refuse an output folder that could not be written at the end, before long work begins.
 
     Use it right after the command line is read. It leaves nothing behind.
@@ -28,19 +34,21 @@ def check_output_folder(folder: Path, replace: bool) -> None:
     Parameters
     ----------
     folder
-        Where the appraisal is to go.
+        Where the results are to go.
     replace
-        Whether an appraisal that is already there may be replaced.
+        Whether results that are already there may be replaced.
+    own
+        Names of the files that may be replaced: those that the same command writes.
 
     Raises
     ------
     OutputError
         O101 the folder exists and may not be replaced, O102 a file has its name, O103 it holds things
-        that no appraisal wrote, O104 its parent does not exist, O105 the parent cannot be written.
+        that the command does not write, O104 its parent does not exist, O105 the parent cannot be written.
     """
     target = folder.resolve()
     if target.is_dir():
-        _check_replaceable(folder, target, replace)
+        _check_replaceable(folder, target, replace, own)
     elif target.exists():
         raise _refusal("O102", folder, "is a file", "give the name of a folder")
     if not target.parent.is_dir():
@@ -71,13 +79,45 @@ def write_appraisal(appraisal: Appraisal, folder: Path, replace: bool) -> None:
     OutputError
         As for :func:`check_output_folder`.
     """
-    check_output_folder(folder, replace)
-    target = folder.resolve()
     texts = {
         DOCUMENT_FILE: document_text(appraisal),
         DISPATCH_FILE: dispatch_table(appraisal),
         PAGE_FILE: report_page(appraisal),
     }
+    _write_texts(texts, folder, replace)
+
+
+def write_record(
+    study: RecordStudy, inputs: tuple[tuple[str, str], ...], folder: Path, replace: bool
+) -> None:
+    """Write ``record.json`` and ``record.html`` into a folder, by the same rules as an appraisal.
+
+    Parameters
+    ----------
+    study
+        What to write.
+    inputs
+        Name and SHA-256 of every input file.
+    folder
+        Where to; created, its parent must exist.
+    replace
+        Whether a record's results that are already there may be replaced.
+
+    Raises
+    ------
+    OutputError
+        As for :func:`check_output_folder`.
+    """
+    texts = {
+        RECORD_DOCUMENT_FILE: record_document_text(study, inputs),
+        RECORD_PAGE_FILE: record_page(study, inputs),
+    }
+    _write_texts(texts, folder, replace)
+
+
+def _write_texts(texts: dict[str, str], folder: Path, replace: bool) -> None:
+    check_output_folder(folder, replace, tuple(texts))
+    target = folder.resolve()
     with _sibling(folder, target) as beside:
         new = beside / "new"
         new.mkdir()
@@ -116,17 +156,17 @@ def _sibling(folder: Path, target: Path) -> Iterator[Path]:
         shutil.rmtree(beside, ignore_errors=True)
 
 
-def _check_replaceable(folder: Path, target: Path, replace: bool) -> None:
+def _check_replaceable(folder: Path, target: Path, replace: bool, own: tuple[str, ...]) -> None:
     if not replace:
         raise _refusal("O101", folder, "already exists", "give another folder, or --replace to replace it")
-    foreign = sorted(entry.name for entry in target.iterdir() if entry.name not in OUTPUT_FILES)
+    foreign = sorted(entry.name for entry in target.iterdir() if entry.name not in own)
     if foreign:
         shown = ", ".join(f"'{name}'" for name in foreign[:3]) + (" and more" if len(foreign) > 3 else "")
         raise _refusal(
             "O103",
             folder,
-            f"holds {shown}, which no appraisal wrote",
-            "move that out, or give another folder; only an appraisal is ever replaced",
+            f"holds {shown}, which this command did not write",
+            "move that out, or give another folder; only its own results are ever replaced",
         )
 
 

@@ -7,6 +7,8 @@ from dataclasses import dataclass
 from jinja2 import Environment, PackageLoader, StrictUndefined
 
 from evenfire.appraisal.results import AlternativeResult, Appraisal, Standing
+from evenfire.demand.peaks import ranked_peaks
+from evenfire.demand.quality import record_quality
 from evenfire.report.cautions import CAUTIONS
 from evenfire.report.figures_demand import duration_drawing, record_drawing, storage_need_drawing
 from evenfire.report.figures_dispatch import dispatch_drawing, peak_drawing, shown_days
@@ -32,6 +34,7 @@ from evenfire.report.page_inputs import (
     typical_days_errors,
     typical_days_table,
 )
+from evenfire.report.page_record import peaks_table, quality_table
 from evenfire.report.page_storage import storage_need_table
 from evenfire.report.page_table import Table
 from evenfire.report.tables import boiler_columns
@@ -96,13 +99,15 @@ def report_page(appraisal: Appraisal) -> str:
         money=money_drawing(appraisal) if any(each.planned for each in appraisal.alternatives) else None,
         record=record_drawing(appraisal),
         duration=duration_drawing(appraisal),
-        record_table=record_table(appraisal),
+        record_table=record_table(appraisal.record),
+        quality=quality_table(appraisal.record, record_quality(appraisal.record)),
+        peaks=_peaks_table(appraisal),
         storage_need=storage_need_drawing(appraisal),
         storage_need_table=storage_need_table(appraisal),
         chapters=_chapters(appraisal),
         costs=cost_tables(appraisal),
         fuel_parts=fuel_table(appraisal),
-        typical_days=typical_days_table(appraisal),
+        typical_days=typical_days_table(appraisal.typical_days),
         typical_days_errors=typical_days_errors(appraisal),
         gaps=gap_table(appraisal),
         inputs=input_tables(appraisal),
@@ -117,6 +122,12 @@ def report_page(appraisal: Appraisal) -> str:
         files=files_table(appraisal),
         command=repeating_command(appraisal),
     )
+
+
+def _peaks_table(appraisal: Appraisal) -> Table:
+    """Peaks above the boilers in place."""
+    capacity_kg_s = sum(offer.spec.rated_kg_s for offer in appraisal.case.boilers if offer.existing)
+    return peaks_table(appraisal.record, ranked_peaks(appraisal.record, capacity_kg_s), capacity_kg_s)
 
 
 def key_numbers(appraisal: Appraisal) -> tuple[KeyNumber, ...]:

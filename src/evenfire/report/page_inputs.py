@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from evenfire.appraisal.results import Appraisal
+from evenfire.demand.series import DemandRecord, TypicalDays
 from evenfire.demand.statistics import demand_statistics
 from evenfire.errors import Notice
 from evenfire.report.formats import MISSING, digits, number, percent, plain, signed_percent
@@ -20,9 +21,8 @@ SECTION_TITLES = {
 ORIGIN_WORDS = {"assumed": "assumed", "note": "remark", "warning": "warning"}
 
 
-def record_table(appraisal: Appraisal) -> Table:
+def record_table(record: DemandRecord) -> Table:
     """The record in figures."""
-    record = appraisal.record
     found = demand_statistics(record)
     return plain_table(
         "The record in figures.",
@@ -47,7 +47,7 @@ def record_table(appraisal: Appraisal) -> Table:
     )
 
 
-def typical_days_table(appraisal: Appraisal) -> Table:
+def typical_days_table(typical: TypicalDays) -> Table:
     """The typical days and their weights."""
     return plain_table(
         "Typical days: real days of the record, each standing for several.",
@@ -61,7 +61,7 @@ def typical_days_table(appraisal: Appraisal) -> Table:
                 digits(kg_s_to_t_h(float(day.flow_kg_s.mean()))),
                 digits(kg_s_to_t_h(float(day.flow_kg_s.max()))),
             )
-            for day in appraisal.typical_days.days
+            for day in typical.days
         ),
         word_columns=(1,),
     )
