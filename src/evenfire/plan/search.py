@@ -90,7 +90,7 @@ class Search:
         if not queue:
             return self._outcome(Stop.INFEASIBLE, None)
         for plan in self._known:
-            if self._allows(plan):
+            if self.allows(plan):
                 self._offer(plan)
         stop = Stop.GAP_REACHED
         closed = float("inf")
@@ -279,7 +279,7 @@ class Search:
 
     # --- plans ----------------------------------------------------------------------------------
 
-    def _allows(self, plan: Plan) -> bool:
+    def allows(self, plan: Plan) -> bool:
         """Whether these rules allow a plan of another alternative."""
         rules, inputs = self._rules, self._inputs
         new = sum(not inputs.boiler(name).existing for name in plan.boilers)
