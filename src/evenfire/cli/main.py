@@ -150,6 +150,26 @@ def record(
 
 
 @app.command()
+def plant(
+    case: CaseArgument,
+    out: Annotated[
+        Path | None, typer.Option(metavar="FOLDER", help="Output folder; CASE/plant unless given.")
+    ] = None,
+    replace: Annotated[bool, typer.Option("--replace", help="Overwrite an existing output folder.")] = False,
+    quiet: Annotated[bool, typer.Option("--quiet", help="Print only problems.")] = False,
+) -> None:
+    """Show what the boilers and the vessel of a case do by themselves; nothing is planned.
+
+    Prints efficiency, losses, burner starts and pressure windows, and writes plant.html with their figures.
+
+    Example: evenfire plant cases/cannery
+    """
+    from evenfire.cli.plant import run
+
+    raise typer.Exit(run(case, out, replace=replace, quiet=quiet))
+
+
+@app.command()
 def schema() -> None:
     """Print the JSON Schema of case.toml, so that an editor can complete and check a case.
 

@@ -8,11 +8,13 @@ from collections.abc import Iterator
 from contextlib import contextmanager
 from pathlib import Path
 
+from evenfire.appraisal.plant_sheet import PlantSheet
 from evenfire.appraisal.record_study import RecordStudy
 from evenfire.appraisal.results import Appraisal
 from evenfire.errors import OutputError, Problem
 from evenfire.report.document import document_text
 from evenfire.report.page import report_page
+from evenfire.report.page_plant import plant_page
 from evenfire.report.page_record import record_page
 from evenfire.report.record_document import record_document_text
 from evenfire.report.tables import dispatch_table
@@ -24,6 +26,8 @@ OUTPUT_FILES = (DOCUMENT_FILE, DISPATCH_FILE, PAGE_FILE)
 RECORD_DOCUMENT_FILE = "record.json"
 RECORD_PAGE_FILE = "record.html"
 RECORD_FILES = (RECORD_DOCUMENT_FILE, RECORD_PAGE_FILE)
+PLANT_PAGE_FILE = "plant.html"
+PLANT_FILES = (PLANT_PAGE_FILE,)
 
 
 def check_output_folder(folder: Path, replace: bool, own: tuple[str, ...] = OUTPUT_FILES) -> None:
@@ -113,6 +117,26 @@ def write_record(
         RECORD_PAGE_FILE: record_page(study, inputs),
     }
     _write_texts(texts, folder, replace)
+
+
+def write_plant(sheet: PlantSheet, folder: Path, replace: bool) -> None:
+    """Write ``plant.html`` into a folder, by the same rules as an appraisal.
+
+    Parameters
+    ----------
+    sheet
+        What to write.
+    folder
+        Where to; created, its parent must exist.
+    replace
+        Whether a plant's page that is already there may be replaced.
+
+    Raises
+    ------
+    OutputError
+        As for :func:`check_output_folder`.
+    """
+    _write_texts({PLANT_PAGE_FILE: plant_page(sheet)}, folder, replace)
 
 
 def _write_texts(texts: dict[str, str], folder: Path, replace: bool) -> None:
