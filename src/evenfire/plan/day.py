@@ -152,9 +152,11 @@ class DayProblem:
         ]
         for age in range(2, max((minimum for _, _, minimum in wanted), default=1) + 1):
             for ages, b, minimum in wanted:
-                ages[b] = min(age, minimum)
-                if np.prod(off_ages + lit_ages) > self.most_states:
-                    ages[b] = min(age - 1, minimum)
+                if ages[b] < min(age, minimum):
+                    ages[b] += 1
+                    if np.prod(off_ages + lit_ages) > self.most_states:
+                        ages[b] -= 1
+                        return off_ages, lit_ages
         return off_ages, lit_ages
 
     def _minimum_times_kept(self, off_ages: IntArray, lit_ages: IntArray) -> bool:
