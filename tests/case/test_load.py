@@ -266,6 +266,7 @@ def test_optional_boiler_keys_are_those_or_belong_to_the_stack():
         "economiser",
         "casing_loss_kw",
         "purge_seconds",
+        "purge_air_kg_h",
         "purge_gas_temperature_degc",
     }
     assert optional - shaping == {line.split(" = ")[0] for line in STATED.splitlines()} - {

@@ -341,6 +341,10 @@ def test_values_that_leave_a_formula_are_told_with_the_boiler(write_example, pro
                 "design_pressure_bar_g = 10.0",
                 "design_pressure_bar_g = 198.9\nburner_pressure_band_bar = 10.0",
             ),
+            (
+                "discharged_pressures_bar_g = [3.5, 5.0]",
+                "discharged_pressures_bar_g = [3.5, 5.0]\ncharged_fill_percent = 20",
+            ),
         )
     )
     assert line.startswith("case.toml: boiler 'Boiler 1', ")

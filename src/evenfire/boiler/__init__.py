@@ -2,13 +2,14 @@
 
 from evenfire.boiler.assumed import (
     assumed_cold_start_s,
-    assumed_purge_energy_j,
     assumed_ramp_kg_s2,
     assumed_stack_slope_per_k,
     assumed_standing_loss_w,
     assumed_water_content_m3,
     buffer_kg,
     cold_start_energy_j,
+    combustion_air_kg_s,
+    purge_energy_j,
 )
 from evenfire.boiler.curve import (
     FuelCurve,
@@ -49,7 +50,6 @@ __all__ = [
     "StackReading",
     "actual_rating_kg_s",
     "assumed_cold_start_s",
-    "assumed_purge_energy_j",
     "assumed_ramp_kg_s2",
     "assumed_stack_slope_per_k",
     "assumed_standing_loss_w",
@@ -58,6 +58,7 @@ __all__ = [
     "buffer_kg",
     "check_points_against_stack",
     "cold_start_energy_j",
+    "combustion_air_kg_s",
     "convex_pieces",
     "cycling_starts_per_s",
     "deaerator_steam_share",
@@ -71,6 +72,7 @@ __all__ = [
     "lowest_firing_efficiency_lhv",
     "o2_from_co2_percent",
     "operating_modes",
+    "purge_energy_j",
     "siegert_coefficients",
     "stack_loss",
     "stack_slope_per_k",

@@ -103,21 +103,29 @@ def buffer_kg(water_content_m3: float, pressure_pa: float, band_pa: float, fill:
     return water_content_m3 / fill * float(rising[-1] - falling[-1])
 
 
-def assumed_purge_energy_j(
-    firing_w_lhv: float,
-    duration_s: float = 60.0,
-    gas_side_k: float = 423.15,
-    ambient_k: float = 293.15,
-) -> float:
-    """Heat the purge air of one burner start carries off [J].
-
-    Air at the flow of full firing (natural gas, 15 % excess air) for ``duration_s`` leaves at the
-    temperature of the gas side.
+def combustion_air_kg_s(firing_w_lhv: float) -> float:
+    """Air of natural gas firing at 15 % excess air [kg/s].
 
     Parameters
     ----------
     firing_w_lhv : float
-        Fuel power at full firing on net calorific value [W].
+        Fuel power on net calorific value [W].
+
+    Examples
+    --------
+    >>> round(combustion_air_kg_s(7e6), 2)
+    2.76
+    """
+    return firing_w_lhv / GAS_LHV_J_M3 * PURGE_AIR_M3_PER_M3_GAS * PURGE_LAMBDA * AIR_DENSITY_KG_M3
+
+
+def purge_energy_j(air_kg_s: float, duration_s: float, gas_side_k: float, ambient_k: float) -> float:
+    """Heat that purge air carries off per burner start [J]: m cp (T_gas side - T_ambient).
+
+    Parameters
+    ----------
+    air_kg_s : float
+        Air flow while purging [kg/s].
     duration_s : float
         Pre-purge and post-purge together [s].
     gas_side_k, ambient_k : float
@@ -125,15 +133,14 @@ def assumed_purge_energy_j(
 
     Notes
     -----
-    Duration and gas-side temperature are assumptions. US practice asks for at least four air changes of a
-    fire-tube boiler (from memory: NFPA 85).
+    Duration and temperature are assumptions unless stated: 60 s and 150 degC. US practice asks for at least
+    four air changes of a fire-tube boiler (from memory: NFPA 85).
 
     Examples
     --------
-    >>> round(assumed_purge_energy_j(7e6) / 1e6, 1)
+    >>> round(purge_energy_j(combustion_air_kg_s(7e6), 60.0, 423.15, 293.15) / 1e6, 1)
     21.8
     """
-    air_kg_s = firing_w_lhv / GAS_LHV_J_M3 * PURGE_AIR_M3_PER_M3_GAS * PURGE_LAMBDA * AIR_DENSITY_KG_M3
     return air_kg_s * duration_s * AIR_HEAT_CAPACITY_J_KG_K * (gas_side_k - ambient_k)
 
 

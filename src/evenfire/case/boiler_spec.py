@@ -7,20 +7,22 @@ from dataclasses import replace
 from evenfire.boiler import (
     actual_rating_kg_s,
     assumed_cold_start_s,
-    assumed_purge_energy_j,
     assumed_ramp_kg_s2,
     assumed_stack_slope_per_k,
     assumed_standing_loss_w,
     assumed_water_content_m3,
     buffer_kg,
     cold_start_energy_j,
+    combustion_air_kg_s,
     fuel_curve,
     lowest_firing_efficiency_lhv,
+    purge_energy_j,
 )
 from evenfire.case.assumptions import Assumed, AssumedValues
 from evenfire.case.efficiency import ASSUMED_O2_PERCENT, efficiency_points, stack_readings
 from evenfire.case.schema_boiler import BoilerType, RatedBoiler
 from evenfire.case.schema_site import Fuel, Steam
+from evenfire.case.water_side import blowdown_fraction
 from evenfire.plant import BoilerSpec
 from evenfire.units import J_PER_KWH, PA_PER_BAR, bar_g_to_pa, degc_to_k, kg_h_to_kg_s
 
@@ -106,7 +108,7 @@ def _without_starts(
         cold_start_s=0.0,
         cold_start_energy_j=0.0,
         ramp_kg_s2=rated_kg_s * ramp_percent_per_minute / 100.0 / SECONDS_PER_MINUTE,
-        blowdown_fraction=steam.blowdown_percent / 100.0,
+        blowdown_fraction=blowdown_fraction(steam),
         stack_slope_per_k=_stack_slope_per_k(kind, steam, fuel, assumed),
     )
 
@@ -117,7 +119,7 @@ def _with_starts(
     """The boiler with what its burner starts and cold starts cost."""
     working_pa = bar_g_to_pa(steam.boiler_pressure_bar_g)
     curve = fuel_curve(bare, working_pa, degc_to_k(steam.feedwater_temperature_degc))
-    purge_energy_kwh, reason = _purge(kind, steam, fuel, float(curve.fuel_w_lhv[-1]))
+    purge_energy_kwh, reason = _purge(rated, kind, steam, fuel, float(curve.fuel_w_lhv[-1]))
     purge_energy_kwh = assumed.stated_or(
         "purge_energy_kwh", rated.purge_energy_kwh, purge_energy_kwh, "kWh/start", reason
     )
@@ -160,7 +162,9 @@ def _water_content_m3(rated: RatedBoiler, rated_kg_s: float, assumed: AssumedVal
     )
 
 
-def _purge(kind: BoilerType, steam: Steam, fuel: Fuel, firing_w_lhv: float) -> tuple[float, str]:
+def _purge(
+    rated: RatedBoiler, kind: BoilerType, steam: Steam, fuel: Fuel, firing_w_lhv: float
+) -> tuple[float, str]:
     """Heat that purge air carries off per start [kWh], and in words what it follows from."""
     if fuel.kind == "electricity":
         return 0.0, "no burner"
@@ -169,8 +173,12 @@ def _purge(kind: BoilerType, steam: Steam, fuel: Fuel, firing_w_lhv: float) -> t
         ASSUMED_PURGE_GAS_DEGC if kind.purge_gas_temperature_degc is None else kind.purge_gas_temperature_degc
     )
     ambient_k = degc_to_k(steam.ambient_temperature_degc)
-    energy_j = assumed_purge_energy_j(firing_w_lhv, duration_s, degc_to_k(gas_degc), ambient_k)
-    return energy_j / J_PER_KWH, f"{duration_s:g} s of full combustion air leaving at {gas_degc:g} degC"
+    if rated.purge_air_kg_h is None:
+        air_kg_s, air = combustion_air_kg_s(firing_w_lhv), "full combustion air"
+    else:
+        air_kg_s, air = kg_h_to_kg_s(rated.purge_air_kg_h), f"{rated.purge_air_kg_h:g} kg/h of air"
+    energy_j = purge_energy_j(air_kg_s, duration_s, degc_to_k(gas_degc), ambient_k)
+    return energy_j / J_PER_KWH, f"{duration_s:g} s of {air} leaving at {gas_degc:g} degC"
 
 
 def _stack_slope_per_k(kind: BoilerType, steam: Steam, fuel: Fuel, assumed: AssumedValues) -> float:

@@ -6,10 +6,12 @@ from collections import Counter
 from collections.abc import Collection, Iterator
 
 from evenfire.case.checks_boiler import boiler_problems, catalogue_problems
-from evenfire.case.checks_steam import boiling_problems, steam_problems
+from evenfire.case.checks_steam import boiling_problems, flooding_problems, steam_problems
 from evenfire.case.draft import Draft
 from evenfire.case.record import record_format
 from evenfire.case.schema_money import AlternativeName
+from evenfire.case.schema_record import Record
+from evenfire.case.schema_site import Steam
 from evenfire.demand.record_format import format_problems
 from evenfire.errors import Problem
 
@@ -26,6 +28,7 @@ def draft_problems(draft: Draft) -> list[Problem]:
             _fuel_problems,
             _vessel_problems,
             _window_problems,
+            flooding_problems,
             _plan_problems,
         )
         for problem in check(draft)
@@ -44,8 +47,34 @@ def _record_problems(draft: Draft) -> Iterator[Problem]:
             allowed=f"with gaps = '{record.gaps}' state the longest gap that may be filled [min]",
         )
     steam = draft.steam
-    if steam is not None and not list(steam_problems(draft)):
+    if steam is None or list(steam_problems(draft)):
+        return
+    found = list(_deaerator_problems(record, steam, f"{draft.file}: record.deaerator_inlet_temperature_degc"))
+    yield from found
+    if not found:
         yield from format_problems(record_format(record, steam)[0], f"{draft.file}: record")
+
+
+def _deaerator_problems(record: Record, steam: Steam, where: str) -> Iterator[Problem]:
+    """A deaerator that cools its water, or whose steam the meter cannot have missed."""
+    inlet_degc = record.deaerator_inlet_temperature_degc
+    if inlet_degc is None:
+        return
+    if inlet_degc > steam.feedwater_temperature_degc:
+        yield Problem(
+            code="C136",
+            where=where,
+            found=f"found {inlet_degc:g} degC",
+            allowed="must not be above steam.feedwater_temperature_degc,"
+            f" {steam.feedwater_temperature_degc:g} degC: a deaerator heats its water",
+        )
+    if record.heat_meter is not None and record.heat_meter.boiler_efficiency_percent is not None:
+        yield Problem(
+            code="C136",
+            where=where,
+            found="stated beside a fuel meter",
+            allowed="leave it out: a fuel meter counts the fuel of all steam made, the deaerator's included",
+        )
 
 
 def _fuel_problems(draft: Draft) -> Iterator[Problem]:

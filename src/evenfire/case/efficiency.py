@@ -15,6 +15,7 @@ from evenfire.case.assumptions import AssumedValues
 from evenfire.case.fuel_basis import net_efficiency
 from evenfire.case.schema_boiler import BoilerType, RatedBoiler
 from evenfire.case.schema_site import Fuel, Steam
+from evenfire.case.water_side import blowdown_fraction
 from evenfire.plant import EfficiencyPoint
 from evenfire.units import degc_to_k
 
@@ -87,7 +88,7 @@ def efficiency_points(
         "casing loss of a shell boiler, by rating",
     )
     heat_j_kg = steam_heat_j_kg(
-        efficiency_pa, degc_to_k(steam.feedwater_temperature_degc), steam.blowdown_percent / 100.0
+        efficiency_pa, degc_to_k(steam.feedwater_temperature_degc), blowdown_fraction(steam)
     )
     return efficiency_points_from_stack(
         fuel.kind, readings, air_k, rated_kg_s * heat_j_kg, casing_loss_kw * 1000.0

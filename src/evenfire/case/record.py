@@ -6,6 +6,7 @@ from evenfire.boiler import steam_heat_j_kg
 from evenfire.case.assumptions import assumption
 from evenfire.case.schema_record import HeatMeter, Record
 from evenfire.case.schema_site import Steam
+from evenfire.case.water_side import deaerator_share
 from evenfire.demand.record_format import HeatMeter as HeatMeterFormat
 from evenfire.demand.record_format import Meter, RecordFormat
 from evenfire.errors import Notice
@@ -48,6 +49,7 @@ def record_format(record: Record, steam: Steam) -> tuple[RecordFormat, tuple[Not
         negative_flow=record.negative_flow,
         counter_rollover=record.counter_rollover or 0.0,
         heat=heat,
+        share_before_meter=deaerator_share(record.deaerator_inlet_temperature_degc, steam),
     ), notices
 
 

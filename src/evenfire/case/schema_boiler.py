@@ -276,7 +276,17 @@ class RatedBoiler(Section):
             "Heat of the boiler carried off by purge air at each burner start.",
             at_least=0.0,
             at_most=1000.0,
-            when_left_out="full combustion air over purge_seconds at purge_gas_temperature_degc",
+            when_left_out="purge air over purge_seconds at purge_gas_temperature_degc",
+        ),
+    ] = None
+    purge_air_kg_h: Annotated[
+        float | None,
+        quantity(
+            "kg/h",
+            "Air blown through the hot boiler while purging.",
+            above=0.0,
+            at_most=1.0e6,
+            when_left_out="combustion air of full firing at 15 % excess air",
         ),
     ] = None
     cold_start_fuel_kwh_lhv: Annotated[

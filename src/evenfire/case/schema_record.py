@@ -158,6 +158,17 @@ class Record(Section):
             "flow_unit", "Reading after which the counter starts again at 0.", above=0.0, at_most=1.0e15
         ),
     ] = None
+    deaerator_inlet_temperature_degc: Annotated[
+        float | None,
+        quantity(
+            "degC",
+            "Water into the deaerator, where the meter sits behind the branch that heats the deaerator with"
+            " boiler steam: the record is then raised by the steam that this takes.",
+            at_least=1.0,
+            at_most=300.0,
+            when_left_out="the record is all steam the boilers make",
+        ),
+    ] = None
     heat_meter: Annotated[
         HeatMeter | None, entry("How steam follows from the meter; needed for kW, MW and m3/h.")
     ] = None

@@ -38,8 +38,15 @@ class Steam(Section):
     ]
     blowdown_percent: Annotated[
         float,
-        quantity("%", "Water blown down over steam made (not over feedwater).", at_least=0.0, at_most=50.0),
+        quantity("%", "Water blown down, over what blowdown_basis says.", at_least=0.0, at_most=50.0),
     ] = 4.0
+    blowdown_basis: Annotated[
+        Literal["steam", "feedwater"],
+        entry(
+            "What blowdown_percent is over: 'steam' made, or 'feedwater' as water treaters state it (r over"
+            " feedwater is r / (1 - r) over steam)."
+        ),
+    ] = "steam"
     charging_pressure_drop_bar: Annotated[
         float,
         quantity("bar", "Pressure lost from boiler to charged vessel.", at_least=0.0, at_most=20.0),
@@ -148,7 +155,7 @@ class Vessel(Section):
             "%",
             "Liquid share of the volume when charged; the rest is steam space.",
             at_least=20.0,
-            at_most=98.0,
+            at_most=95.0,
         ),
     ] = 90.0
     length_to_diameter_ratio: Annotated[

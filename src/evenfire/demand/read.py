@@ -81,10 +81,12 @@ def demand_record(path: Path, form: RecordFormat) -> DemandRecord:
         grid.flow_kg_s, grid.start, grid.step_s, form.gaps, form.largest_gap_s, source
     )
     notices = (*table.notices, *stamp_notices, *readings.notices, *grid.notices, *gap_notices)
+    if form.share_before_meter:
+        notices = (*notices, _share_notice(form.share_before_meter, source))
     return DemandRecord(
         start=grid.start,
         step_s=grid.step_s,
-        flow_kg_s=flow,
+        flow_kg_s=flow / (1.0 - form.share_before_meter),
         source=source,
         notices=notices + _length_notices(grid.start, flow.size * grid.step_s),
         gaps=tuple(sorted((*grid.spread, *gaps), key=lambda gap: gap.first_step)),
@@ -99,6 +101,11 @@ def _table(path: Path, form: RecordFormat) -> Table:
     from evenfire.demand.text_file import text_table
 
     return text_table(path, form)
+
+
+def _share_notice(share: float, source: str) -> Notice:
+    text = f"{source}: raised to all steam made; {share:.1%} of it leaves ahead of the meter (deaerator)."
+    return Notice(code="R201", text=text)
 
 
 def _length_notices(start: dt.datetime, length_s: float) -> tuple[Notice, ...]:

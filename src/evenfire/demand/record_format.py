@@ -96,6 +96,8 @@ class RecordFormat:
     """Reading after which the counter starts again at 0, in its own unit; 0 when it never does."""
     heat: HeatMeter | None = None
     """Needed for kW, MW and m3/h."""
+    share_before_meter: float = 0.0
+    """Share of all steam made that leaves ahead of the meter, as the deaerator's does [1]."""
 
     @property
     def meters(self) -> tuple[Meter, ...]:

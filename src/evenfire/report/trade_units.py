@@ -122,6 +122,12 @@ def _steam(case: Case) -> tuple[Quantity, ...]:
             unit="°C",
         ),
         Quantity(
+            key="blowdown_percent_of_steam",
+            words="Blowdown over steam made",
+            value=100.0 * case.boilers[0].spec.blowdown_fraction,
+            unit="%",
+        ),
+        Quantity(
             key="charging_pressure_drop_bar",
             words="Pressure drop, boiler to charged vessel",
             value=site.charging_drop_pa / PA_PER_BAR,
