@@ -137,8 +137,10 @@ def test_a_bare_file_says_the_same_as_its_case(
     file = str(CANNERY / "steam.csv.gz")
     assert _run(monkeypatch, file, *COLUMNS, "--boilers-kg-h", "7500", "--out", str(out)) == 0
     bare, case = _document(out), _document(cannery)
-    for key in ("steam_t", "peak_kg_h", "problems", "storage_need", "typical_days", "peaks_count", "ramps"):
+    for key in ("steam_t", "peak_kg_h", "problems", "storage_need", "peaks_count", "ramps"):
         assert bare[key] == case[key], key
+    assert bare["typical_days"]["errors"]["cost_percent"] is None
+    assert abs(case["typical_days"]["errors"]["cost_percent"]) <= 0.5
 
 
 def test_what_a_bare_file_lacks_is_asked_for_with_its_header(

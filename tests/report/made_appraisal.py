@@ -18,6 +18,7 @@ from evenfire.appraisal.results import (
     Standing,
     VesselChoice,
 )
+from evenfire.demand.enough_days import DayErrors
 from evenfire.demand.series import DemandRecord, FloatArray, StorageNeed, StorageNeedPiece, TypicalDays
 from evenfire.demand.typical_days import typical_days
 from evenfire.errors import Notice
@@ -302,6 +303,9 @@ def made_appraisal(site: str = "Retort hall (invented)") -> Appraisal:
         case=made_case(site, tuple(each.name for each in alternatives)),
         record=record,
         typical_days=days,
+        day_errors=DayErrors(
+            energy=0.011, duration_curve=0.02, peak_steam=-0.04, peak_time=0.03, cost=-0.0037
+        ),
         storage_need=made_storage_need(),
         alternatives=alternatives,
         reference="as is",

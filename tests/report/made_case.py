@@ -132,6 +132,7 @@ def made_case(name: str = "Retort hall (invented)", alternatives: tuple[str, ...
             step_s=300.0,
             time_limit_s=30.0,
             gap=0.001,
+            typical_days_error=0.005,
             reference="as is",
             alternatives=alternatives,
             unmet_tolerance_kg_per_year=5000.0,

@@ -5,6 +5,7 @@ from __future__ import annotations
 from importlib.metadata import version
 
 from evenfire.appraisal.alternatives import RULES
+from evenfire.appraisal.day_choice import chosen_days, day_notices
 from evenfire.appraisal.plan_inputs import plan_inputs
 from evenfire.appraisal.priced import Priced, alternative_result, priced, unplanned_result
 from evenfire.appraisal.results import AlternativeResult, Appraisal
@@ -14,7 +15,6 @@ from evenfire.case.case import Case
 from evenfire.demand.read import demand_record
 from evenfire.demand.series import DemandRecord, TypicalDays
 from evenfire.demand.storage_need import storage_need
-from evenfire.demand.typical_days import typical_days
 from evenfire.errors import InfeasibleError, Notice, Problem
 from evenfire.plan.inputs import PlanInputs
 from evenfire.plan.optimum import best_plan
@@ -49,9 +49,10 @@ def appraise(case: Case, watch: Watcher | None = None) -> Appraisal:
         E101 if the reference, or every alternative, has no plan.
     """
     record = demand_record(case.record_file, case.record_format)
-    typical = typical_days(record, case.plan.step_s)
     need = storage_need(record.flow_kg_s, record.step_s)
     tables = window_tables(case)
+    chosen = chosen_days(case, record, need, tables)
+    typical = chosen.days
     inputs = plan_inputs(case, record, typical, need, tables)
     outcomes = planned_alternatives(case, inputs, watch)
     prices = {
@@ -71,13 +72,14 @@ def appraise(case: Case, watch: Watcher | None = None) -> Appraisal:
         case=case,
         record=record,
         typical_days=typical,
+        day_errors=chosen.errors,
         storage_need=need,
         alternatives=results,
         reference=case.plan.reference,
         best=best.name,
         verdict=verdict_words(case, results, best),
         fuel_basis=case.fuel_price_basis,
-        notices=_notices(results),
+        notices=(*day_notices(case, chosen), *_notices(results)),
         versions=tuple((package, version(package)) for package in _PACKAGES),
     )
 

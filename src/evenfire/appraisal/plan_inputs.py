@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-import datetime as dt
-
 import numpy as np
 from numpy.typing import NDArray
 
@@ -22,7 +20,7 @@ from evenfire.plan.inputs import (
     PlanRates,
     VesselSegment,
 )
-from evenfire.units import J_PER_MWH, KG_PER_TONNE, SECONDS_PER_HOUR, kg_s_to_t_h
+from evenfire.units import DAYS_PER_YEAR, J_PER_MWH, KG_PER_TONNE, SECONDS_PER_HOUR, kg_s_to_t_h
 
 FloatArray = NDArray[np.float64]
 
@@ -44,13 +42,8 @@ def plan_inputs(
     fuel_k_mwh = fuel_present_k_mwh(case, rates)
     return PlanInputs(
         step_h=case.plan.step_s / SECONDS_PER_HOUR,
-        days=tuple(
-            PlanDay(
-                name=day.name, days_per_year=day.days_per_year, demand_t_h=kg_s_to_t_h_array(day.flow_kg_s)
-            )
-            for day in typical.days
-        ),
-        transitions_per_year=transitions_per_year(record, typical),
+        days=plan_days(typical),
+        transitions_per_year=transitions_per_year(typical),
         boilers=tuple(_plan_boiler(case, offer, working_pa, rates) for offer in case.boilers),
         pressures=len(working_pa),
         vessel_segments=tuple(
@@ -75,6 +68,14 @@ def plan_inputs(
     )
 
 
+def plan_days(typical: TypicalDays) -> tuple[PlanDay, ...]:
+    """Typical days in the plan's units."""
+    return tuple(
+        PlanDay(name=day.name, days_per_year=day.days_per_year, demand_t_h=kg_s_to_t_h_array(day.flow_kg_s))
+        for day in typical.days
+    )
+
+
 def kg_s_to_t_h_array(flow_kg_s: FloatArray) -> FloatArray:
     """Flows for the model [t/h]."""
     return flow_kg_s * (SECONDS_PER_HOUR / KG_PER_TONNE)
@@ -89,31 +90,16 @@ def _blowdown(case: Case) -> float:
     return case.boilers[0].spec.blowdown_fraction
 
 
-def transitions_per_year(record: DemandRecord, typical: TypicalDays) -> FloatArray:
+def transitions_per_year(typical: TypicalDays) -> FloatArray:
     """How often a year each typical day follows each other one, shape (days, days).
 
-    Every complete calendar day of the record is read as its typical day: itself where it was chosen,
-    else the first of its kind.
+    Every complete day of the record is read as the typical day that stands for it; the last is followed by
+    the first.
     """
-    by_date = {day.date: i for i, day in enumerate(typical.days)}
-    kinds = ("workday", "workday", "workday", "workday", "workday", "saturday", "sunday")
-
-    def typical_index(date: dt.date) -> int:
-        if date in by_date:
-            return by_date[date]
-        kind = kinds[date.weekday()]
-        named = [i for i, day in enumerate(typical.days) if day.name.startswith(kind)]
-        return named[0] if named else 0
-
-    first = record.start.date()
-    if record.start.time() != dt.time.min:
-        first += dt.timedelta(days=1)
-    length = int(record.days)
-    sequence = [typical_index(first + dt.timedelta(days=i)) for i in range(length)]
     counts = np.zeros((len(typical.days), len(typical.days)))
-    for earlier, later in zip(sequence, sequence[1:] + sequence[:1], strict=True):
-        counts[earlier, later] += 1.0
-    return counts * (365.0 / length)
+    following = (*typical.assigned[1:], typical.assigned[0])
+    np.add.at(counts, (list(typical.assigned), list(following)), 1.0)
+    return counts * (DAYS_PER_YEAR / len(typical.assigned))
 
 
 def _plan_boiler(case: Case, offer: BoilerOffer, working_pa: list[float], rates: PresentRates) -> PlanBoiler:

@@ -13,6 +13,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from evenfire.case.case import Case
+from evenfire.demand.enough_days import DayErrors
 from evenfire.demand.series import DemandRecord, StorageNeed, TypicalDays
 from evenfire.errors import Notice
 
@@ -171,6 +172,8 @@ class Appraisal:
     case: Case
     record: DemandRecord
     typical_days: TypicalDays
+    day_errors: DayErrors
+    """What the typical days get wrong against every complete day of the record."""
     storage_need: StorageNeed
     alternatives: tuple[AlternativeResult, ...]
     reference: str

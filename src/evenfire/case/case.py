@@ -55,6 +55,8 @@ class PlanRequest:
     """Per alternative [s]."""
     gap: float
     """Asked relative gap [1]."""
+    typical_days_error: float
+    """Largest error in operating cost of the typical days [1]."""
     reference: str
     alternatives: tuple[str, ...]
     unmet_tolerance_kg_per_year: float

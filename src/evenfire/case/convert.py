@@ -160,6 +160,7 @@ def _plan(written: CaseFile) -> PlanRequest:
         step_s=plan.step_minutes * SECONDS_PER_MINUTE,
         time_limit_s=plan.time_limit_seconds,
         gap=plan.gap_percent / 100.0,
+        typical_days_error=plan.typical_days_error_percent / 100.0,
         reference=plan.reference,
         alternatives=plan.alternatives or _possible_alternatives(written),
         unmet_tolerance_kg_per_year=plan.unmet_steam_tolerance_t_per_year * KG_PER_TONNE,

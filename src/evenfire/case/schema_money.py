@@ -113,6 +113,16 @@ class Plan(Section):
             "s", "Longest planning time per alternative; its result is labelled.", above=0.0, at_most=86_400.0
         ),
     ] = 30.0
+    typical_days_error_percent: Annotated[
+        float,
+        quantity(
+            "%",
+            "Largest difference in operating cost between the typical days and all days of the record, for"
+            " today's plant and for one with storage; days are added until it is met, up to twelve.",
+            at_least=0.0,
+            at_most=20.0,
+        ),
+    ] = 0.5
     reference: Annotated[
         AlternativeName, entry("The alternative that savings and payback are measured against.")
     ] = "as is"

@@ -4,17 +4,21 @@ from __future__ import annotations
 
 import gzip
 import hashlib
+from collections.abc import Callable
 from dataclasses import asdict, dataclass
 from pathlib import Path
 
 from rich.console import Console
 
+from evenfire.appraisal.day_choice import MOST_DAYS, chosen_days
 from evenfire.appraisal.record_study import RecordStudy, record_study
+from evenfire.appraisal.vessels import window_tables
 from evenfire.case.load import load_case
 from evenfire.demand.enough_days import DayTolerances, EnoughDays, enough_typical_days
 from evenfire.demand.read import demand_record
 from evenfire.demand.record_format import HeatMeter, RecordFormat
 from evenfire.demand.series import DemandRecord
+from evenfire.demand.storage_need import storage_need
 from evenfire.errors import ExitStatus, Notice, Problem, RecordError
 from evenfire.report.folder import RECORD_FILES, check_output_folder, write_record
 from evenfire.units import J_PER_KWH, KG_PER_TONNE, SECONDS_PER_DAY, kg_h_to_kg_s, kg_s_to_kg_h
@@ -22,7 +26,6 @@ from evenfire.units import J_PER_KWH, KG_PER_TONNE, SECONDS_PER_DAY, kg_h_to_kg_
 SECONDS_PER_MINUTE = 60.0
 J_PER_KJ = 1000.0
 USUAL_STEP_S = 300.0
-MOST_DAYS = 12
 NEEDED = {"time_column": "--time-column", "flow_column": "--flow-column", "unit": "--unit"}
 
 
@@ -87,7 +90,8 @@ def _of_case(path: Path) -> tuple[RecordStudy, tuple[tuple[str, str], ...]]:
     case = load_case(path)
     record = demand_record(case.record_file, case.record_format)
     capacity_kg_s = sum(offer.spec.rated_kg_s for offer in case.boilers if offer.existing)
-    typical, untypical = _typical(record, case.plan.step_s, capacity_kg_s)
+    need = storage_need(record.flow_kg_s, record.step_s)
+    typical, untypical = _tried(lambda: chosen_days(case, record, need, window_tables(case)))
     study = record_study(record, case.name, capacity_kg_s, "boilers in place today", typical, untypical)
     return study, case.input_hashes
 
@@ -100,18 +104,18 @@ def _of_file(path: Path, options: FileOptions) -> tuple[RecordStudy, tuple[tuple
     compared = capacity_kg_s
     if compared is None:
         compared = (float(record.flow_kg_s.mean()) + float(record.flow_kg_s.max())) / 2.0
-    typical, untypical = _typical(record, step_s, compared)
+    typical, untypical = _tried(
+        lambda: enough_typical_days(record, step_s, compared, DayTolerances(), MOST_DAYS)
+    )
     study = record_study(record, path.name, capacity_kg_s, "boilers as stated", typical, untypical)
     return study, ((path.name, hashlib.sha256(path.read_bytes()).hexdigest()),)
 
 
-def _typical(
-    record: DemandRecord, step_s: float, capacity_kg_s: float
-) -> tuple[EnoughDays | None, Notice | None]:
+def _tried(choose: Callable[[], EnoughDays]) -> tuple[EnoughDays | None, Notice | None]:
+    """Typical days, or why there are none: everything else a study shows needs no complete day."""
     try:
-        return enough_typical_days(record, step_s, capacity_kg_s, DayTolerances(), MOST_DAYS), None
+        return choose(), None
     except RecordError as refused:
-        # Everything else the study shows needs no complete day and no step that divides one.
         problem = refused.problems[0]
         text = f"No typical days: {problem.found}; {problem.allowed}."
         return None, Notice(code=problem.code, text=text, severity="warning")

@@ -14,6 +14,7 @@ from evenfire.demand.typical_days import (
     complete_days,
     curve_distance,
     day_kind,
+    distances_to_mean,
     nearest_to_mean,
     peak_days,
     typical_day,
@@ -22,6 +23,9 @@ from evenfire.demand.typical_days import (
 from evenfire.errors import Problem, RecordError
 from evenfire.units import DAYS_PER_YEAR
 
+CANDIDATES = 8
+"""Days nearest to a group's mean that may stand for it."""
+MOST_COMBINATIONS = 200_000
 GROWTH = 0.25
 """Share of further days added before errors are looked at again; at least one."""
 
@@ -83,6 +87,7 @@ def enough_typical_days(
     tolerances: DayTolerances,
     most_days: int,
     cost_error: Callable[[TypicalDays], float] | None = None,
+    day_costs: FloatArray | None = None,
 ) -> EnoughDays:
     """Typical days, added until every stated error is within its tolerance.
 
@@ -104,6 +109,9 @@ def enough_typical_days(
     cost_error
         Relative cost error of a set of days [1]: the same fixed plant dispatched on them and on the
         whole record. Called only when the other errors are within their tolerances.
+    day_costs
+        What every complete day costs by itself, shape (plants, days), any unit: the days that stand for
+        others are then chosen so that the weighted days cost what all days do.
 
     Returns
     -------
@@ -118,10 +126,12 @@ def enough_typical_days(
     Notes
     -----
     Groups hold days of one kind. A group is split between its representative and the day farthest
-    from it; each half is then represented by the day nearest to its mean. The distance of two days is
-    the difference of their steam plus that of their sorted flows, all in absolute values. With every
-    day a group of its own the errors but the cost error are zero. What averaging to ``step_s`` costs is
-    in ``days.peak_error``, not here.
+    from it; each half is then represented by the day nearest to its mean. With ``day_costs`` one of the
+    eight nearest may stand for it instead: of all combinations whose steam and costs are within half of
+    their tolerances the one nearest to the means is taken, else the one with the least error. The
+    distance of two days is the difference of their steam plus that of their sorted flows, all in
+    absolute values. With every day a group of its own the errors but the cost error are zero. What
+    averaging to ``step_s`` costs is in ``days.peak_error``, not here.
 
     Examples
     --------
@@ -138,7 +148,9 @@ def enough_typical_days(
     groups = _first_groups(days, peaks)
     tried: list[tuple[int, DayErrors]] = []
     while True:
-        chosen = with_errors(record, step_s, _typical(groups, peaks, days))
+        if day_costs is not None:
+            groups = _matched(groups, peaks, days, day_costs, tolerances)
+        chosen = with_errors(record, step_s, *_typical(groups, peaks, days))
         errors = _errors(chosen, days, capacity_kg_s)
         met = _within(errors, tolerances)
         if met and cost_error is not None:
@@ -191,6 +203,37 @@ def _group(kind: str, members: tuple[int, ...], days: Days) -> _Group:
     return _Group(kind=kind, members=members, chosen=chosen, spread=spread)
 
 
+def _matched(
+    groups: list[_Group], peaks: list[int], days: Days, day_costs: FloatArray, tolerances: DayTolerances
+) -> list[_Group]:
+    """Groups whose chosen days together have the steam and the costs of all days, as nearly as can be.
+
+    Every combination of the days nearest to their groups' means is looked at.
+    """
+    figures = np.vstack([days.flow_kg_s.sum(axis=1), day_costs])
+    whole = figures.sum(axis=1)
+    allowed = np.array([tolerances.energy] + [tolerances.cost] * len(day_costs)) / 2.0
+    count = max(1, min(CANDIDATES, int(MOST_COMBINATIONS ** (1.0 / max(1, len(groups))))))
+    totals = figures[:, peaks].sum(axis=1)[:, None] - whole[:, None]
+    away = np.zeros(1)
+    candidates = []
+    for group in groups:
+        flow = days.flow_kg_s[list(group.members)]
+        distance = distances_to_mean(flow)
+        nearest = np.argsort(distance, kind="stable")[:count]
+        candidates.append([group.members[at] for at in nearest])
+        own = len(group.members) * figures[:, candidates[-1]]
+        totals = (totals[:, :, None] + own[:, None, :]).reshape(len(figures), -1)
+        away = (away[:, None] + len(group.members) * distance[nearest][None, :]).ravel()
+    scale = np.where(whole == 0.0, 1.0, np.abs(whole))
+    excess = (np.abs(totals) / scale[:, None] / np.maximum(allowed, 1e-12)[:, None]).max(axis=0)
+    best = int(np.lexsort((away, np.maximum(excess, 1.0)))[0])
+    picked = np.unravel_index(best, tuple(len(each) for each in candidates))
+    return [
+        replace(group, chosen=each[at]) for group, each, at in zip(groups, candidates, picked, strict=True)
+    ]
+
+
 def _distances(members: tuple[int, ...], other: int, days: Days) -> FloatArray:
     away = np.sort(days.flow_kg_s[list(members)], axis=1) - np.sort(days.flow_kg_s[other])
     distances: FloatArray = np.abs(away.sum(axis=1)) + np.abs(away).sum(axis=1)
@@ -218,18 +261,25 @@ def _split(groups: list[_Group], days: Days) -> list[_Group]:
     return [group for group in groups if group is not widest] + halves
 
 
-def _typical(groups: list[_Group], peaks: list[int], days: Days) -> tuple[TypicalDay, ...]:
+def _typical(
+    groups: list[_Group], peaks: list[int], days: Days
+) -> tuple[tuple[TypicalDay, ...], tuple[int, ...]]:
+    """The days that stand for the groups, and which of them stands for each day of the record."""
     weight = DAYS_PER_YEAR / len(days.dates)
-    chosen = []
+    chosen: list[TypicalDay] = []
+    assigned = [0] * len(days.dates)
     for kind in KINDS:
         of_kind = sorted((g for g in groups if g.kind == kind), key=lambda group: -len(group.members))
         for number, group in enumerate(of_kind, start=1):
             name = kind if len(of_kind) == 1 else f"{kind} {number}"
+            for member in group.members:
+                assigned[member] = len(chosen)
             chosen.append(typical_day(name, group.chosen, days, weight * len(group.members)))
     for number, at in enumerate(peaks, start=1):
         name = "peak day" if len(peaks) == 1 else f"peak day {number}"
+        assigned[at] = len(chosen)
         chosen.append(typical_day(name, at, days, weight))
-    return tuple(chosen)
+    return tuple(chosen), tuple(assigned)
 
 
 def _errors(chosen: TypicalDays, days: Days, capacity_kg_s: float) -> DayErrors:

@@ -66,6 +66,8 @@ class TypicalDays:
 
     step_s: float
     days: tuple[TypicalDay, ...]
+    assigned: tuple[int, ...] = field(repr=False)
+    """Position in ``days`` of the day that stands for each complete calendar day of the record, in order."""
     energy_error: float
     """(steam of the weighted days - steam of the record) / steam of the record [1]."""
     duration_curve_error: float

@@ -70,16 +70,20 @@ def typical_days(record: DemandRecord, step_s: float) -> TypicalDays:
     days = complete_days(record, step_s)
     peaks = peak_days(record, days)
     day_weight = DAYS_PER_YEAR / len(days.dates)
-    chosen = []
+    chosen: list[TypicalDay] = []
+    assigned = [0] * len(days.dates)
     for kind in KINDS:
         members = [at for at, date in enumerate(days.dates) if at not in peaks and day_kind(date) == kind]
         if members:
             at = members[nearest_to_mean(days.flow_kg_s[members])]
+            for member in members:
+                assigned[member] = len(chosen)
             chosen.append(typical_day(kind, at, days, day_weight * len(members)))
     for number, at in enumerate(peaks, start=1):
         name = "peak day" if len(peaks) == 1 else f"peak day {number}"
+        assigned[at] = len(chosen)
         chosen.append(typical_day(name, at, days, day_weight))
-    return with_errors(record, step_s, tuple(chosen))
+    return with_errors(record, step_s, tuple(chosen), tuple(assigned))
 
 
 def day_kind(date: dt.date) -> str:
@@ -141,10 +145,15 @@ def peak_days(record: DemandRecord, days: Days) -> list[int]:
 
 def nearest_to_mean(flow: FloatArray) -> int:
     """Position of the day closest to the mean day in steam and load duration curve; shape (days, steps)."""
+    return int(distances_to_mean(flow).argmin())
+
+
+def distances_to_mean(flow: FloatArray) -> FloatArray:
+    """Distance of each day to the mean day in steam and load duration curve; shape (days, steps)."""
     curves = np.sort(flow, axis=1)
     away = curves - curves.mean(axis=0)
     distance: FloatArray = np.abs(away.sum(axis=1)) + np.abs(away).sum(axis=1)
-    return int(distance.argmin())
+    return distance
 
 
 def typical_day(name: str, at: int, days: Days, days_per_year: float) -> TypicalDay:
@@ -154,7 +163,9 @@ def typical_day(name: str, at: int, days: Days, days_per_year: float) -> Typical
     )
 
 
-def with_errors(record: DemandRecord, step_s: float, days: tuple[TypicalDay, ...]) -> TypicalDays:
+def with_errors(
+    record: DemandRecord, step_s: float, days: tuple[TypicalDay, ...], assigned: tuple[int, ...]
+) -> TypicalDays:
     """Typical days with what they get wrong against the raw record."""
     flow = np.concatenate([day.flow_kg_s for day in days])
     weight = np.concatenate(
@@ -165,6 +176,7 @@ def with_errors(record: DemandRecord, step_s: float, days: tuple[TypicalDay, ...
     return TypicalDays(
         step_s=step_s,
         days=days,
+        assigned=assigned,
         energy_error=float(np.average(flow, weights=weight)) / mean - 1.0,
         duration_curve_error=curve_distance(flow, weight, record.flow_kg_s) / mean,
         peak_error=float(flow.max()) / peak - 1.0,

@@ -30,8 +30,6 @@ EXPECTED_LOSS = (4e-3, 1e-3, 4e-4, 2e-4, 1e-4)
 """What a bound at each quantum usually loses of the cost: decides whether to refine it or to split."""
 _MOST_STATES = (1, 64, 64, 64, 64)
 """Joint burner states told apart at each quantum; 1 leaves minimum times out of the bound."""
-_PLAN_STAGE = 1
-"""Quantum at which states for plans are sought."""
 _THREADS = 2
 
 
@@ -57,6 +55,7 @@ class Operation:
     def __init__(self, inputs: PlanInputs, *, joined: bool) -> None:
         self._inputs = inputs
         self._joined = joined
+        self._plan_stage = 0 if joined else 1
         self._bounds: dict[tuple[int, Service, int, Store, int], float] = {}
         self._potentials: dict[tuple[Plant, int], FloatArray] = {}
         self._steam_k_t: dict[tuple[Service, int], float] = {}
@@ -113,6 +112,13 @@ class Operation:
                     costs[day][service] = max(costs[day][service], value)
                     proven.add((day, service))
 
+    def day_bounds_k(self, plant: Plant, services: tuple[Service, ...], stage: int) -> FloatArray:
+        """Lower bound of operating each day once with its boilers hot [k], shape (days,)."""
+        weights = np.array([day.days_per_year for day in self._inputs.days])
+        yearly = [self._day_bound(plant, stage, which) for which in enumerate(services)]
+        bounds: FloatArray = np.array(yearly) / weights
+        return bounds
+
     def states(self, plant: Plant, services: tuple[Service, ...]) -> tuple[FixedDay, ...] | None:
         """Good states of every day for a plant with its true vessel; None where the grid has none."""
         boilers = [self._inputs.boiler(name) for name in plant.boilers]
@@ -120,7 +126,7 @@ class Operation:
         with ThreadPoolExecutor(_THREADS) as pool:
             schedules = list(
                 pool.map(
-                    lambda pair: self._problem(plant, pair[0], pair[1], _PLAN_STAGE).schedule(boundary),
+                    lambda pair: self._problem(plant, pair[0], pair[1], self._plan_stage).schedule(boundary),
                     enumerate(services),
                 )
             )
@@ -181,7 +187,7 @@ class Operation:
         """Stored steam at every midnight of a plan: that of the day of median steam by itself."""
         totals = [float(day.demand_t_h.sum()) for day in self._inputs.days]
         middle = int(np.argsort(totals)[len(totals) // 2])
-        schedule = self._problem(plant, middle, services[middle], _PLAN_STAGE).schedule(None)
+        schedule = self._problem(plant, middle, services[middle], self._plan_stage).schedule(None)
         return 0.0 if schedule is None else schedule.start_t
 
     def _rough_day_k(self, plant: Plant, day: int, service: Service) -> float:

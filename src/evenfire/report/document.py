@@ -14,6 +14,7 @@ from evenfire.appraisal.results import (
     VesselChoice,
 )
 from evenfire.case.case import Case
+from evenfire.demand.enough_days import DayErrors
 from evenfire.demand.series import DemandRecord, StorageNeed, TypicalDays
 from evenfire.demand.statistics import demand_statistics
 from evenfire.errors import Notice
@@ -61,7 +62,7 @@ def document(appraisal: Appraisal) -> dict[str, Any]:
             "cautions": list(CAUTIONS),
             "alternatives": [_alternative(each) for each in appraisal.alternatives],
             "record": _record(appraisal.record),
-            "typical_days": _typical_days(appraisal.typical_days),
+            "typical_days": _typical_days(appraisal.typical_days, appraisal.day_errors),
             "storage_need": _storage_need(appraisal.storage_need),
             "inputs": _inputs(case),
             "notices": [_notice(each) for each in all_notices(appraisal)],
@@ -163,12 +164,15 @@ def _record(record: DemandRecord) -> dict[str, Any]:
     }
 
 
-def _typical_days(typical: TypicalDays) -> dict[str, Any]:
+def _typical_days(typical: TypicalDays, errors: DayErrors) -> dict[str, Any]:
     return {
         "step_minutes": typical.step_s / SECONDS_PER_MINUTE,
         "energy_error": typical.energy_error,
         "duration_curve_error": typical.duration_curve_error,
         "peak_error": typical.peak_error,
+        "steam_above_boilers_error": errors.peak_steam,
+        "time_above_boilers_error": errors.peak_time,
+        "cost_error": errors.cost,
         "days": [
             {
                 "name": day.name,

@@ -90,6 +90,24 @@ def typical_days_errors(appraisal: Appraisal) -> Table:
                 "highest step of the typical days against the highest raw step; "
                 "shorter peaks are averaged away here and checked on the raw record instead",
             ),
+            (
+                "Steam above today's boilers",
+                signed_percent(appraisal.day_errors.peak_steam),
+                "depth of the peaks, against every complete day of the record",
+            ),
+            (
+                "Time above today's boilers",
+                signed_percent(appraisal.day_errors.peak_time),
+                "number and length of the peaks, against every complete day of the record",
+            ),
+            (
+                "Operating cost",
+                MISSING
+                if appraisal.day_errors.cost is None
+                else signed_percent(appraisal.day_errors.cost, 2),
+                "today's plant, and one with storage, operated on the typical days against every complete "
+                "day of the record; the larger difference",
+            ),
         ),
         word_columns=(2,),
     )

@@ -243,6 +243,12 @@ def _plan(case: Case) -> tuple[Quantity, ...]:
         ),
         Quantity(key="gap_percent", words="Asked gap", value=100.0 * plan.gap, unit="%"),
         Quantity(
+            key="typical_days_error_percent",
+            words="Asked error of the typical days in cost",
+            value=100.0 * plan.typical_days_error,
+            unit="%",
+        ),
+        Quantity(
             key="time_limit_seconds", words="Time limit per alternative", value=plan.time_limit_s, unit="s"
         ),
         Quantity(
