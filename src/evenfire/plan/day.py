@@ -53,7 +53,7 @@ class DayProblem:
     store: Store
     quantum_t: float
     most_states: int
-    """Burner states told apart; fewer than the minimum times ask for still give a valid bound."""
+    """Joint burner states told apart at most; without minimum times a bound is still valid."""
 
     @cached_property
     def _outward(self) -> StepCosts:
@@ -139,24 +139,11 @@ class DayProblem:
         )
 
     def _ages(self) -> tuple[IntArray, IntArray]:
-        """Ages of burner states told apart, as many as ``most_states`` allows, the shortest first."""
-        off_ages = np.ones(len(self.boilers), dtype=np.int64)
-        lit_ages = np.ones(len(self.boilers), dtype=np.int64)
-        wanted = [
-            (ages, b, minimum)
-            for b, boiler in enumerate(self.boilers)
-            for ages, minimum in (
-                (lit_ages, boiler.minimum_firing_steps),
-                (off_ages, boiler.minimum_off_steps),
-            )
-        ]
-        for age in range(2, max((minimum for _, _, minimum in wanted), default=1) + 1):
-            for ages, b, minimum in wanted:
-                if ages[b] < min(age, minimum):
-                    ages[b] += 1
-                    if np.prod(off_ages + lit_ages) > self.most_states:
-                        ages[b] -= 1
-                        return off_ages, lit_ages
+        """Ages of burner states told apart: all that minimum times ask for, or none beyond the limit."""
+        off_ages = np.array([boiler.minimum_off_steps for boiler in self.boilers], dtype=np.int64)
+        lit_ages = np.array([boiler.minimum_firing_steps for boiler in self.boilers], dtype=np.int64)
+        if np.prod(off_ages + lit_ages) > self.most_states:
+            return np.ones_like(off_ages), np.ones_like(lit_ages)
         return off_ages, lit_ages
 
     def _minimum_times_kept(self, off_ages: IntArray, lit_ages: IntArray) -> bool:
@@ -193,7 +180,8 @@ class DayProblem:
         if not self._minimum_times_kept(*ages):
             hold = max(max(x.minimum_firing_steps, x.minimum_off_steps) for x in self.boilers)
             ages = np.ones_like(ages[0]), np.ones_like(ages[1])
-        found = [self._schedule(ages, hold, offset, boundary_t) for offset in range(hold)]
+        offsets = sorted({0, hold // 2})
+        found = [self._schedule(ages, hold, offset, boundary_t) for offset in offsets]
         kept = [schedule for schedule in found if schedule is not None]
         return min(kept, key=lambda x: x.cost_k) if kept else None
 

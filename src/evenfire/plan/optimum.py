@@ -15,6 +15,7 @@ from evenfire.plan.milp import FEASIBILITY_TOLERANCE, solve
 from evenfire.plan.model import alternative_model
 from evenfire.plan.outcome import Has, Plan, PlanOutcome, Progress, Stop, Watcher
 from evenfire.plan.search import Search
+from evenfire.plan.store import Kept, PlanStore
 from evenfire.plan.translate import assign, extract
 from evenfire.plan.verify import judged
 
@@ -30,6 +31,8 @@ def best_plan(
     time_limit_s: float,
     known: tuple[Plan, ...] = (),
     watch: Watcher | None = None,
+    store: PlanStore | None = None,
+    joined: bool = False,
 ) -> PlanOutcome:
     """Plan an alternative to the asked gap, or as far as the time allows.
 
@@ -45,6 +48,10 @@ def best_plan(
         Plans of other alternatives to start from where the rules allow them.
     watch : callable, optional
         Called with a ``Progress`` as cost and bound close.
+    store : PlanStore, optional
+        Plans of earlier runs: one within the gap is taken as it is, another is a start.
+    joined : bool
+        Whether the days follow each other as in the record.
 
     Returns
     -------
@@ -52,15 +59,42 @@ def best_plan(
         Its plan judged in the mixed-integer model: ``cost_k`` is the model's objective there.
     """
     begin = time.monotonic()
-    outcome = Search(inputs, rules, known).run(gap, time_limit_s, watch)
+    kept = None if store is None or joined else store.get(inputs, rules)
+    if kept is not None:
+        outcome = _kept_outcome(inputs, rules, kept)
+        if outcome.gap is not None and outcome.gap <= gap:
+            return replace(outcome, seconds=time.monotonic() - begin)
+        known = (*known, kept.plan)
+    outcome = Search(inputs, rules, known, joined=joined).run(gap, time_limit_s, watch)
+    if kept is not None and outcome.bound_k is not None:
+        outcome = replace(outcome, bound_k=max(outcome.bound_k, kept.bound_k))
     left = time_limit_s - (time.monotonic() - begin)
     size = len(rules.allowed) * sum(len(day.demand_t_h) for day in inputs.days)
-    if outcome.stop is Stop.SOLVER_LIMIT and left > 0 and size <= LARGEST_MODEL_STEPS:
+    if outcome.stop is Stop.SOLVER_LIMIT and not joined and left > 0 and size <= LARGEST_MODEL_STEPS:
         outcome = _finished(inputs, rules, outcome, gap, left, watch)
     if outcome.plan is not None:
         judgement = judged(inputs, rules, outcome.plan)
         outcome = replace(outcome, cost_k=judgement.cost_k, largest_violation=judgement.largest_violation)
+    if store is not None and not joined:
+        store.put(inputs, rules, outcome)
     return replace(outcome, seconds=time.monotonic() - begin)
+
+
+def _kept_outcome(inputs: PlanInputs, rules: AlternativeRules, kept: Kept) -> PlanOutcome:
+    """An earlier run's plan, judged anew."""
+    judgement = judged(inputs, rules, kept.plan)
+    return PlanOutcome(
+        alternative=rules.name,
+        stop=Stop.GAP_REACHED,
+        has=Has.PLAN,
+        cost_k=judgement.cost_k,
+        bound_k=min(kept.bound_k, judgement.cost_k),
+        plan=kept.plan,
+        largest_violation=judgement.largest_violation,
+        solver=kept.solver,
+        shortlist=kept.shortlist,
+        seconds=0.0,
+    )
 
 
 def _finished(

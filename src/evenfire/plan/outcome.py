@@ -97,6 +97,8 @@ class PlanOutcome:
     """Largest violation of any constraint by the plan, evaluated outside the solver, in model units."""
     solver: str
     """Which method gave the plan and the bound, in words."""
+    shortlist: tuple[Plan, ...] = field(default=(), repr=False)
+    """Other plants near the optimum, larger vessels among them, cheapest first."""
     seconds: float = field(compare=False)
 
     @property

@@ -33,6 +33,12 @@ _FEWEST_JOINED_DAYS = 13
 """From this number of days on a plan keeps the volume of a node's middle; its days are polished singly."""
 
 
+_LARGER_VESSELS = (1.25, 1.6, 2.0)
+_SHORTLIST_MARGIN = 0.03
+"""Plans up to this much dearer than the best are worth a replay [1]."""
+_SHORTLIST_LENGTH = 6
+
+
 @dataclass(frozen=True, slots=True, kw_only=True)
 class _Node:
     """Boilers, pressure window and range of volumes, with the bound proven so far."""
@@ -50,6 +56,7 @@ class _Incumbent:
     plan: Plan | None = None
     cost_k: float = float("inf")
     tried: set[tuple[tuple[str, ...], int | None, float]] = field(default_factory=set)
+    found: list[tuple[float, Plan]] = field(default_factory=list)
 
 
 class Search:
@@ -78,6 +85,7 @@ class Search:
         self._known = known
         self._windows = window_curves(inputs.vessel_segments)
         self._operation = Operation(inputs, joined=joined)
+        self._joined = joined
         self._best = _Incumbent()
         self._begin = time.monotonic()
 
@@ -117,7 +125,7 @@ class Search:
         bound = min([closed, self._best.cost_k, *(entry[0] for entry in queue)])
         if stop is Stop.GAP_REACHED and not self._within(gap, bound):
             stop = Stop.SOLVER_LIMIT
-        return self._outcome(stop, bound)
+        return replace(self._outcome(stop, bound), shortlist=self._shortlist())
 
     def _within(self, gap: float, bound: float) -> bool:
         cost = self._best.cost_k
@@ -231,7 +239,9 @@ class Search:
             bound_k=max(node.bound_k, self._fixed_k(node) + operation_k),
             stage=node.stage + 1,
         )
-        if better.stage >= 2 and better.bound_k < self._best.cost_k:
+        narrow_enough = width_k <= 2 * EXPECTED_LOSS[0] * node.bound_k
+        ready = narrow_enough if self._joined else better.stage >= 2
+        if ready and better.bound_k < self._best.cost_k:
             self._try(better, services)
         return [better]
 
@@ -297,6 +307,7 @@ class Search:
 
     def _offer(self, plan: Plan) -> None:
         cost = plan_cost_k(self._inputs, plan)
+        self._best.found.append((cost, plan))
         if cost < self._best.cost_k:
             self._best.plan, self._best.cost_k = plan, cost
 
@@ -308,6 +319,11 @@ class Search:
         if key in self._best.tried:
             return
         self._best.tried.add(key)
+        self._make(node, volume, services, free_volume=len(inputs.days) < _FEWEST_JOINED_DAYS)
+
+    def _make(self, node: _Node, volume: float, services: tuple[Service, ...], *, free_volume: bool) -> None:
+        """Plan a node's boilers and window at a volume, or freely within the segment around it."""
+        inputs = self._inputs
         days = self._operation.states(self._plant(node, at_m3=volume), services)
         if days is None:
             return
@@ -316,10 +332,44 @@ class Search:
             curves = self._windows[node.window]
             segment = curves.segment_at(volume)
             low, high = inputs.vessel_segments[segment].volume_m3
-            allowed = (max(low, self._smallest_adequate_m3(node.boilers, curves)), high)
-            if len(inputs.days) >= _FEWEST_JOINED_DAYS:
-                allowed = (volume, volume)
+            allowed = (volume, volume)
+            if free_volume:
+                allowed = (max(low, self._smallest_adequate_m3(node.boilers, curves)), high)
         boilers = tuple(inputs.boiler(name) for name in node.boilers)
         plan = polished(inputs, boilers, segment, allowed, days)
         if plan is not None:
             self._offer(plan)
+
+    def _shortlist(self) -> tuple[Plan, ...]:
+        """Plants within the margin of the best, distinct in boilers, window or a tenth of volume.
+
+        Foresight flatters small vessels, so the best plan's vessel is planned larger too.
+        """
+        best = self._best.plan
+        if best is None:
+            return ()
+        if best.segment is not None:
+            window = self._inputs.vessel_segments[best.segment].window
+            services = tuple(
+                tuple(name for name, hot in zip(best.boilers, day.in_service, strict=True) if hot)
+                for day in best.dispatch
+            )
+            largest = float(self._windows[window].volume_m3[-1])
+            node = _Node(
+                boilers=best.boilers, window=window, low_m3=0.0, high_m3=largest, bound_k=0.0, stage=0
+            )
+            for factor in _LARGER_VESSELS:
+                if best.volume_m3 * factor <= largest:
+                    self._make(node, best.volume_m3 * factor, services, free_volume=False)
+        kept: dict[tuple[object, ...], Plan] = {self._kind(best): best}
+        for cost, plan in sorted(self._best.found, key=lambda x: x[0]):
+            if cost <= self._best.cost_k * (1.0 + _SHORTLIST_MARGIN) and len(kept) <= _SHORTLIST_LENGTH:
+                kept.setdefault(self._kind(plan), plan)
+        return tuple(kept.values())[1:]
+
+    def _kind(self, plan: Plan) -> tuple[object, ...]:
+        """What tells two plants apart on a short list."""
+        if plan.segment is None:
+            return (plan.boilers,)
+        window = self._inputs.vessel_segments[plan.segment].window
+        return plan.boilers, window, round(np.log(plan.volume_m3) / np.log(1.1))
