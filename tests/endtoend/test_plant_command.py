@@ -73,7 +73,7 @@ def test_folder_rules_are_those_of_an_appraisal(
 
 
 def test_needs_no_record(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
-    """The equipment can be looked at before a usable record exists."""
+    """The equipment can be looked at before the record is usable; its file only has to be there."""
     folder = write_small_case(tmp_path / "small", days=2)
     (folder / "steam.csv").write_text("not a record\n")
 
