@@ -70,6 +70,8 @@ class Search:
         Plans of other alternatives; those that these rules allow are starting points.
     joined : bool
         Whether the days follow each other as in the record, instead of each being cyclic by itself.
+    operation : Operation, optional
+        Of the same inputs, with the bounds that searches of other alternatives have proven.
     """
 
     def __init__(
@@ -79,12 +81,13 @@ class Search:
         known: tuple[Plan, ...] = (),
         *,
         joined: bool = False,
+        operation: Operation | None = None,
     ) -> None:
         self._inputs = inputs
         self._rules = rules
         self._known = known
         self._windows = window_curves(inputs.vessel_segments)
-        self._operation = Operation(inputs, joined=joined)
+        self._operation = Operation(inputs, joined=joined) if operation is None else operation
         self._joined = joined
         self._best = _Incumbent()
         self._begin = time.monotonic()
