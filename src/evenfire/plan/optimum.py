@@ -13,6 +13,7 @@ from evenfire.plan.compiled import compiled
 from evenfire.plan.inputs import AlternativeRules, PlanInputs
 from evenfire.plan.milp import FEASIBILITY_TOLERANCE, solve
 from evenfire.plan.model import alternative_model
+from evenfire.plan.operation import Operation
 from evenfire.plan.outcome import Has, Plan, PlanOutcome, Progress, Stop, Watcher
 from evenfire.plan.search import Search
 from evenfire.plan.store import Kept, PlanStore
@@ -33,6 +34,7 @@ def best_plan(
     watch: Watcher | None = None,
     store: PlanStore | None = None,
     joined: bool = False,
+    operation: Operation | None = None,
 ) -> PlanOutcome:
     """Plan an alternative to the asked gap, or as far as the time allows.
 
@@ -52,6 +54,8 @@ def best_plan(
         Plans of earlier runs: one within the gap is taken as it is, another is a start.
     joined : bool
         Whether the days follow each other as in the record.
+    operation : Operation, optional
+        Of the same inputs and days, with the bounds that searches of other alternatives have proven.
 
     Returns
     -------
@@ -65,7 +69,7 @@ def best_plan(
         if outcome.gap is not None and outcome.gap <= gap:
             return replace(outcome, seconds=time.monotonic() - begin)
         known = (*known, kept.plan)
-    outcome = Search(inputs, rules, known, joined=joined).run(gap, time_limit_s, watch)
+    outcome = Search(inputs, rules, known, joined=joined, operation=operation).run(gap, time_limit_s, watch)
     if kept is not None and outcome.bound_k is not None:
         outcome = replace(outcome, bound_k=max(outcome.bound_k, kept.bound_k))
     left = time_limit_s - (time.monotonic() - begin)
