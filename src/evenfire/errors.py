@@ -84,6 +84,14 @@ class OutputError(EvenfireError):
     """The output folder cannot be written."""
 
 
+class SweepError(EvenfireError):
+    """A sweep that cannot be run as asked."""
+
+
+class QuoteError(EvenfireError):
+    """A table of quotes that cannot be used as it is."""
+
+
 class InfeasibleError(EvenfireError):
     """No plant that the case allows can do what it asks."""
 

@@ -4,12 +4,15 @@ from __future__ import annotations
 
 import copy
 import re
+import tomllib
 from collections.abc import Iterator, Mapping
+from dataclasses import dataclass
+from pathlib import Path
 from typing import Any, get_args
 
 from evenfire.case.messages import nearest, written
 from evenfire.case.schema import CaseFile
-from evenfire.case.schema_section import Section, section_of
+from evenfire.case.schema_section import Section, field_at, section_of, unit_of
 from evenfire.errors import CaseError, Problem
 
 Location = tuple[str | int, ...]
@@ -128,3 +131,51 @@ def _unknown_path(path: str, known: tuple[str, ...], file: str) -> Problem:
         found="no numeric input has this path",
         allowed=nearest(path, known) or f"numeric inputs of this case are {shown}, ...",
     )
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class NumericInput:
+    """A numeric input of a case."""
+
+    path: str
+    """As the program writes it, boilers by name."""
+    value: float | None
+    """As the case states it, in ``unit``; None where the case leaves it out."""
+    unit: str
+
+
+def numeric_input(file: Path, path: str) -> NumericInput:
+    """The numeric input at a dotted path of a case file that can be read.
+
+    Parameters
+    ----------
+    file : Path
+        The case file or its folder.
+    path : str
+        As for :func:`changed_case`.
+
+    Raises
+    ------
+    CaseError
+        C123 for a path that is not a numeric input of this case, the nearest one offered.
+    """
+    file = file / "case.toml" if file.is_dir() else file
+    raw = tomllib.loads(file.read_text(encoding="utf-8-sig"))
+    for place, _ in _numeric_places(raw, CaseFile, ()):
+        named = _path(place, raw, by_name=True)
+        if _plain(path) in (_plain(named), _plain(_path(place, raw, by_name=False))):
+            field = field_at(CaseFile, place)
+            return NumericInput(
+                path=named, value=_stated(raw, place), unit="" if field is None else unit_of(field)
+            )
+    raise CaseError(_unknown_path(path, numeric_paths(raw), str(file)))
+
+
+def _stated(raw: Mapping[str, Any], place: Location) -> float | None:
+    at: Any = raw
+    for step in place:
+        if isinstance(at, Mapping):
+            at = at.get(step)
+        elif isinstance(at, list) and isinstance(step, int):
+            at = at[step]
+    return float(at) if isinstance(at, int | float) else None
