@@ -122,8 +122,8 @@ REFUSALS = [
     ),
     pytest.param(
         ('"storage", "free choice"]', '"store", "free choice"]'),
-        "case.toml: plan.alternatives[3]: found 'store'; must be 'as is' or 'bigger boiler' or 'further boiler' or"
-        " 'storage' or 'free choice'; did you mean 'storage'? [C107]",
+        "case.toml: plan.alternatives[3]: found 'store'; must be 'as is' or 'staggered starts' or 'bigger boiler'"
+        " or 'further boiler' or 'storage' or 'free choice'; did you mean 'storage'? [C107]",
         id="unknown alternative",
     ),
     pytest.param(

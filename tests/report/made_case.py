@@ -70,6 +70,7 @@ def made_case(name: str = "Retort hall (invented)", alternatives: tuple[str, ...
         name=name,
         question="Peaks of 12 t/h against 7.5 t/h of boilers: what is the cheapest way to supply them?",
         record_file=Path("cases/retort hall/steam.csv"),
+        schedule=None,
         record_format=RecordFormat(
             time_column="time", flow_column="steam_kg_h", flow_unit="kg/h", gaps="hold", largest_gap_s=600.0
         ),

@@ -5,6 +5,7 @@ from __future__ import annotations
 from importlib.metadata import version
 
 from evenfire.appraisal.alternatives import RULES
+from evenfire.appraisal.case_record import case_record
 from evenfire.appraisal.day_choice import chosen_days, day_notices
 from evenfire.appraisal.plan_inputs import plan_inputs
 from evenfire.appraisal.priced import Priced, alternative_result, priced, unplanned_result
@@ -12,7 +13,6 @@ from evenfire.appraisal.results import AlternativeResult, Appraisal
 from evenfire.appraisal.verdict import best_of, verdict_words
 from evenfire.appraisal.vessels import window_tables
 from evenfire.case.case import Case
-from evenfire.demand.read import demand_record
 from evenfire.demand.series import DemandRecord, TypicalDays
 from evenfire.demand.storage_need import storage_need
 from evenfire.errors import InfeasibleError, Notice, Problem
@@ -48,7 +48,7 @@ def appraise(case: Case, watch: Watcher | None = None) -> Appraisal:
     InfeasibleError
         E101 if the reference, or every alternative, has no plan.
     """
-    record = demand_record(case.record_file, case.record_format)
+    record = case_record(case)
     need = storage_need(record.flow_kg_s, record.step_s)
     tables = window_tables(case)
     chosen = chosen_days(case, record, need, tables)

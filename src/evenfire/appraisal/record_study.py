@@ -23,6 +23,7 @@ _DONE = {
     "R146": "kept as measured",
     "R147": "the year is made of the other days",
     "R151": "drawn, not measured",
+    "R153": "drawn, to show how weeks differ",
     "R190": "scaled up to a year",
     "R191": "filled as stated",
     "R192": "read as the file decides",

@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+import datetime as dt
 from dataclasses import dataclass
 from pathlib import Path
 
+from evenfire.demand.batch_schedule import BatchSchedule
 from evenfire.demand.record_format import RecordFormat
 from evenfire.errors import Notice
 from evenfire.money.terms import Finance, Investment, Prices
@@ -47,6 +49,33 @@ class VesselOffer:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class StartLimit:
+    """How far the fixed starts of a batch may be shifted to spare peaks."""
+
+    batch: str
+    earlier_s: float
+    later_s: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class ScheduleRequest:
+    """Demand to be drawn from a batch schedule, alone or on top of the record."""
+
+    schedule: BatchSchedule
+    seed: int
+    first_monday: dt.date | None
+    """None where the schedule comes on top of the record, whose days and steps it then takes."""
+    weeks: int
+    """Weeks to draw; 0 on top of a record."""
+    step_s: float
+    """Step of the drawn demand [s]; 0 on top of a record."""
+    week_share: float | None
+    """Go on with the week whose storage need this share of the weeks does not exceed [1]; None for all."""
+    start_limits: tuple[StartLimit, ...]
+    """Batches whose fixed starts may be shifted."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class PlanRequest:
     """How the plan is to be made."""
 
@@ -69,8 +98,11 @@ class Case:
     folder: Path
     name: str
     question: str
-    record_file: Path
-    record_format: RecordFormat
+    record_file: Path | None
+    """None where a batch schedule alone makes the demand."""
+    record_format: RecordFormat | None
+    schedule: ScheduleRequest | None
+    """None where the record alone makes the demand."""
     conditions: SteamConditions
     fuel: FuelSpec
     boilers: tuple[BoilerOffer, ...]

@@ -9,11 +9,16 @@ from evenfire.case.checks_boiler import boiler_problems, catalogue_problems
 from evenfire.case.checks_steam import boiling_problems, flooding_problems, steam_problems
 from evenfire.case.draft import Draft
 from evenfire.case.record import record_format
+from evenfire.case.schedule import schedule_problems
 from evenfire.case.schema_money import AlternativeName
 from evenfire.case.schema_record import Record
+from evenfire.case.schema_schedule import Schedule
 from evenfire.case.schema_site import Steam
 from evenfire.demand.record_format import format_problems
 from evenfire.errors import Problem
+
+SHIFTABLE = "schedule.batch.may_start_later_minutes"
+"""Stands for a [schedule] with starts that may be shifted."""
 
 
 def draft_problems(draft: Draft) -> list[Problem]:
@@ -22,6 +27,7 @@ def draft_problems(draft: Draft) -> list[Problem]:
         problem
         for check in (
             _record_problems,
+            _schedule_problems,
             steam_problems,
             boiler_problems,
             catalogue_problems,
@@ -53,6 +59,11 @@ def _record_problems(draft: Draft) -> Iterator[Problem]:
     yield from found
     if not found:
         yield from format_problems(record_format(record, steam)[0], f"{draft.file}: record")
+
+
+def _schedule_problems(draft: Draft) -> Iterator[Problem]:
+    steam = None if list(steam_problems(draft)) else draft.steam
+    yield from schedule_problems(draft.schedule, steam, draft.file, alone="record" not in draft.sections)
 
 
 def _deaerator_problems(record: Record, steam: Steam, where: str) -> Iterator[Problem]:
@@ -173,7 +184,10 @@ def _plan_problems(draft: Draft) -> Iterator[Problem]:
     if plan is None:
         return
     place = f"{draft.file}: plan"
-    alternatives = plan.alternatives or possible_alternatives(draft.sections)
+    sections = draft.sections
+    if draft.schedule is not None and starts_shift(draft.schedule):
+        sections |= {SHIFTABLE}
+    alternatives = plan.alternatives or possible_alternatives(sections)
     for name, times in Counter(alternatives).items():
         if times > 1:
             yield Problem(
@@ -190,12 +204,12 @@ def _plan_problems(draft: Draft) -> Iterator[Problem]:
             allowed=f"must be one of plan.alternatives: {', '.join(alternatives)}",
         )
     for name in dict.fromkeys(alternatives):
-        if name not in possible_alternatives(draft.sections):
-            sections = " or ".join(f"[{section}]" for section in _NEEDED_SECTIONS[name])
+        if name not in possible_alternatives(sections):
+            needed = " or ".join(f"[{section}]" for section in _NEEDED_SECTIONS[name])
             yield Problem(
                 code="C126",
                 where=f"{place}.alternatives",
-                found=f"'{name}' needs {sections}, which the case does not have",
+                found=f"'{name}' needs {needed}, which the case does not have",
                 allowed="add it, or leave the alternative out of the list",
             )
     steps = 1440.0 / plan.step_minutes
@@ -206,6 +220,11 @@ def _plan_problems(draft: Draft) -> Iterator[Problem]:
             found=f"found {plan.step_minutes:g} min",
             allowed="must divide a day, as 1, 5, 10, 15 or 30 min do",
         )
+
+
+def starts_shift(schedule: Schedule) -> bool:
+    """Whether a schedule has starts that may be put earlier or later."""
+    return any(batch.may_start_earlier_minutes or batch.may_start_later_minutes for batch in schedule.batch)
 
 
 def possible_alternatives(sections: Collection[str]) -> tuple[AlternativeName, ...]:
@@ -219,6 +238,7 @@ def possible_alternatives(sections: Collection[str]) -> tuple[AlternativeName, .
 
 _NEEDED_SECTIONS: dict[AlternativeName, tuple[str, ...]] = {
     "as is": (),
+    "staggered starts": (SHIFTABLE,),
     "bigger boiler": ("new_boiler",),
     "further boiler": ("new_boiler",),
     "storage": ("vessel",),

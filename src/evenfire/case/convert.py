@@ -10,10 +10,11 @@ from evenfire.boiler import fuel_spec
 from evenfire.case.assumptions import assumption, default_notices
 from evenfire.case.boilers import boiler_offers
 from evenfire.case.case import Case, PlanRequest, VesselOffer
-from evenfire.case.checks import possible_alternatives
+from evenfire.case.checks import SHIFTABLE, possible_alternatives, starts_shift
 from evenfire.case.draft import boiler_place
 from evenfire.case.fuel_basis import lhv_to_hhv
 from evenfire.case.record import record_format
+from evenfire.case.schedule import schedule_request
 from evenfire.case.schema import CaseFile
 from evenfire.case.schema_money import AlternativeName, Money
 from evenfire.case.schema_section import Section
@@ -29,7 +30,7 @@ SECONDS_PER_MINUTE = 60.0
 
 
 def case_in_si(
-    written: CaseFile, file: Path, record_file: Path, input_hashes: tuple[tuple[str, str], ...]
+    written: CaseFile, file: Path, record_file: Path | None, input_hashes: tuple[tuple[str, str], ...]
 ) -> Case:
     """The case that the models see, from a case file in which nothing is wrong.
 
@@ -38,11 +39,13 @@ def case_in_si(
     written : CaseFile
         The whole case file, checked.
     file, record_file : Path
-        The case file and its record.
+        The case file and its record, if it has one.
     input_hashes : tuple of (str, str)
         File name and sha256 of every input.
     """
-    form, record_notices = record_format(written.record, written.steam)
+    form, record_notices = (
+        (None, ()) if written.record is None else record_format(written.record, written.steam)
+    )
     boilers, boiler_notices = boiler_offers(written, str(file))
     return Case(
         folder=file.parent,
@@ -50,6 +53,9 @@ def case_in_si(
         question=written.site.question,
         record_file=record_file,
         record_format=form,
+        schedule=None
+        if written.schedule is None
+        else schedule_request(written.schedule, written.steam, alone=written.record is None),
         conditions=_conditions(written.steam),
         fuel=_fuel(written.fuel),
         boilers=boilers,
@@ -169,9 +175,10 @@ def _plan(written: CaseFile) -> PlanRequest:
 
 def _possible_alternatives(written: CaseFile) -> tuple[AlternativeName, ...]:
     """Every alternative for which the case has the sections."""
-    return possible_alternatives(
-        frozenset(name for name in ("new_boiler", "vessel") if getattr(written, name) is not None)
-    )
+    sections = {name for name in ("new_boiler", "vessel") if getattr(written, name) is not None}
+    if written.schedule is not None and starts_shift(written.schedule):
+        sections.add(SHIFTABLE)
+    return possible_alternatives(sections)
 
 
 def _notices(written: CaseFile) -> Iterator[Notice]:

@@ -13,6 +13,7 @@ from evenfire.case.schema import CaseFile
 from evenfire.case.schema_boiler import ExistingBoiler, NewBoiler
 from evenfire.case.schema_money import Money, Plan
 from evenfire.case.schema_record import Record
+from evenfire.case.schema_schedule import Schedule
 from evenfire.case.schema_section import Section, section_of
 from evenfire.case.schema_site import Fuel, Site, Steam, Vessel
 from evenfire.errors import Problem
@@ -27,6 +28,7 @@ class Draft:
     file: str
     site: Site | None
     record: Record | None
+    schedule: Schedule | None
     steam: Steam | None
     fuel: Fuel | None
     existing_boilers: tuple[ExistingBoiler, ...]
@@ -63,10 +65,15 @@ def case_draft(raw: Mapping[str, Any], file: str) -> tuple[Draft, list[Problem]]
     problems = _unknown_sections(raw, file)
     boilers, boiler_problems = _existing_boilers(raw, file)
     new_boiler = _section(raw, "new_boiler", NewBoiler, file, problems)
+    site = _section(raw, "site", Site, file, problems)
+    if "record" not in raw and "schedule" not in raw:
+        description = str(CaseFile.model_fields["record"].description)
+        problems.append(_missing_section("record", description, file))
     draft = Draft(
         file=file,
-        site=_section(raw, "site", Site, file, problems),
+        site=site,
         record=_section(raw, "record", Record, file, problems),
+        schedule=_section(raw, "schedule", Schedule, file, problems),
         steam=_section(raw, "steam", Steam, file, problems),
         fuel=_section(raw, "fuel", Fuel, file, problems),
         existing_boilers=boilers,
@@ -102,18 +109,15 @@ def _section(
     if name not in raw:
         if not field.is_required():
             return field.default if isinstance(field.default, section) else None
-        problems.append(
-            Problem(
-                code="C104",
-                where=f"{file}: [{name}]",
-                found="missing section",
-                allowed=str(field.description),
-            )
-        )
+        problems.append(_missing_section(name, str(field.description), file))
         return None
     read, found = _read(raw[name], section, f"{file}: [{name}]", f"{file}: {name}.", f"a section [{name}]")
     problems += found
     return read
+
+
+def _missing_section(name: str, description: str, file: str) -> Problem:
+    return Problem(code="C104", where=f"{file}: [{name}]", found="missing section", allowed=description)
 
 
 def _existing_boilers(raw: Mapping[str, Any], file: str) -> tuple[tuple[ExistingBoiler, ...], list[Problem]]:

@@ -24,7 +24,7 @@ LARGEST_CASE_BYTES = 5_000_000
 def load_case(path: str | Path, changes: Mapping[str, float] | None = None) -> Case:
     """Case read from its folder or file, checked as a whole and converted to SI.
 
-    Use it at the start of every run. The record itself is not read here, only found and hashed.
+    Use it at the start of every run. A record is not read here, only found and hashed.
 
     Parameters
     ----------
@@ -45,7 +45,7 @@ def load_case(path: str | Path, changes: Mapping[str, float] | None = None) -> C
         Every problem of the file at once: C101 no such file, C102 not TOML, C103 unknown key, C104 missing
         key, C105 to C109 a value of the wrong kind, range, choice or form, C110 to C135 values that
         contradict each other, C123 a path that does not exist, C130 no record file; and R-codes where
-        [record] contradicts itself.
+        [record] or [schedule] contradicts itself.
 
     Examples
     --------
@@ -67,7 +67,10 @@ def load_case(path: str | Path, changes: Mapping[str, float] | None = None) -> C
     if problems:
         raise CaseError(*problems)
     return case_in_si(
-        CaseFile.model_validate(raw), file, record_file, (_hash(file, content), _hash(record_file))
+        CaseFile.model_validate(raw),
+        file,
+        record_file,
+        (_hash(file, content), *(() if record_file is None else (_hash(record_file),))),
     )
 
 
@@ -137,9 +140,9 @@ def _table(content: bytes, file: Path) -> dict[str, Any]:
         ) from error
 
 
-def _record_file(draft: Draft, file: Path) -> tuple[Path, list[Problem]]:
+def _record_file(draft: Draft, file: Path) -> tuple[Path | None, list[Problem]]:
     if draft.record is None:
-        return file, []
+        return None, []
     record_file = file.parent / draft.record.file
     if record_file.is_file():
         return record_file, []

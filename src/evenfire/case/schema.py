@@ -7,6 +7,7 @@ from typing import Annotated, Any
 from evenfire.case.schema_boiler import ExistingBoiler, NewBoiler
 from evenfire.case.schema_money import Money, Plan
 from evenfire.case.schema_record import Record
+from evenfire.case.schema_schedule import Schedule
 from evenfire.case.schema_section import Section, entry
 from evenfire.case.schema_site import Fuel, Site, Steam, Vessel
 
@@ -15,7 +16,12 @@ class CaseFile(Section):
     """One site and one question, as written in case.toml."""
 
     site: Annotated[Site, entry("Which site, and the question asked.")]
-    record: Annotated[Record, entry("The measured steam demand.")]
+    record: Annotated[
+        Record | None, entry("The measured steam demand; left out where a [schedule] alone makes it.")
+    ] = None
+    schedule: Annotated[
+        Schedule | None, entry("Demand described as equipment: alone without [record], else on top of it.")
+    ] = None
     steam: Annotated[Steam, entry("Pressures and temperatures of the site.")]
     fuel: Annotated[Fuel, entry("What the boilers burn and what it costs.")]
     existing_boiler: Annotated[

@@ -6,7 +6,9 @@ from typing import Annotated, Literal
 
 from evenfire.case.schema_section import LARGEST_PRICE_PER_MWH, Section, entry, quantity
 
-AlternativeName = Literal["as is", "bigger boiler", "further boiler", "storage", "free choice"]
+AlternativeName = Literal[
+    "as is", "staggered starts", "bigger boiler", "further boiler", "storage", "free choice"
+]
 
 
 class Money(Section):
@@ -129,10 +131,11 @@ class Plan(Section):
     alternatives: Annotated[
         tuple[AlternativeName, ...] | None,
         entry(
-            "Which ways to supply the demand are compared: 'as is'; 'bigger boiler' (new one in place of the"
-            " old); 'further boiler' (new one beside them); 'storage' (accumulator with today's boilers);"
-            " 'free choice' (any mix). The boilers need [new_boiler], storage needs [vessel], free choice one"
-            " of the two.",
+            "Which ways to supply the demand are compared: 'as is'; 'staggered starts' (today's boilers,"
+            " batches started within their limits so that peaks are least); 'bigger boiler' (new one in place"
+            " of the old); 'further boiler' (new one beside them); 'storage' (accumulator with today's"
+            " boilers); 'free choice' (any mix). The boilers need [new_boiler], storage needs [vessel], free"
+            " choice one of the two, staggered starts a [schedule] whose starts may shift.",
             shortest=1,
             when_left_out="every one that the case's sections allow",
         ),

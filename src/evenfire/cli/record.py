@@ -10,6 +10,7 @@ from pathlib import Path
 
 from rich.console import Console
 
+from evenfire.appraisal.case_record import case_record
 from evenfire.appraisal.day_choice import MOST_DAYS, chosen_days
 from evenfire.appraisal.record_study import RecordStudy, record_study
 from evenfire.appraisal.vessels import window_tables
@@ -88,7 +89,7 @@ def run(path: Path, options: FileOptions, out: Path | None, *, replace: bool, qu
 
 def _of_case(path: Path) -> tuple[RecordStudy, tuple[tuple[str, str], ...]]:
     case = load_case(path)
-    record = demand_record(case.record_file, case.record_format)
+    record = case_record(case)
     capacity_kg_s = sum(offer.spec.rated_kg_s for offer in case.boilers if offer.existing)
     need = storage_need(record.flow_kg_s, record.step_s)
     typical, untypical = _tried(lambda: chosen_days(case, record, need, window_tables(case)))

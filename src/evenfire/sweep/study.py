@@ -10,12 +10,12 @@ from pathlib import Path
 import numpy as np
 
 from evenfire.appraisal.alternatives import RULES
+from evenfire.appraisal.case_record import case_record
 from evenfire.appraisal.day_choice import chosen_days
 from evenfire.appraisal.plan_inputs import plan_inputs
 from evenfire.appraisal.vessels import WindowTable, window_tables
-from evenfire.case.case import Case, VesselOffer
+from evenfire.case.case import Case, ScheduleRequest, VesselOffer
 from evenfire.case.load import load_case
-from evenfire.demand.read import demand_record
 from evenfire.demand.record_format import RecordFormat
 from evenfire.demand.series import DemandRecord, StorageNeed, TypicalDays
 from evenfire.demand.storage_need import storage_need
@@ -60,7 +60,7 @@ def study(path: Path, changes: Mapping[str, float]) -> Study:
         As for an appraisal of the changed case.
     """
     case = load_case(path, changes)
-    record, typical, need = _demand(path, case.record_format, case.plan.step_s)
+    record, typical, need = _demand(path, case.record_format, case.schedule, case.plan.step_s)
     tables = _tables(case.vessel, case.conditions, _Whole(case))
     return Study(
         case=case, record=record, inputs=plan_inputs(case, record, typical, need, tables), tables=tables
@@ -88,10 +88,13 @@ def _tables(
 
 
 @lru_cache(maxsize=_KEPT_RECORDS)
-def _demand(path: Path, form: RecordFormat, step_s: float) -> tuple[DemandRecord, TypicalDays, StorageNeed]:
+def _demand(
+    path: Path, form: RecordFormat | None, schedule: ScheduleRequest | None, step_s: float
+) -> tuple[DemandRecord, TypicalDays, StorageNeed]:
     written = load_case(path)
-    case = replace(written, record_format=form, plan=replace(written.plan, step_s=step_s))
-    record = demand_record(case.record_file, form)
+    plan = replace(written.plan, step_s=step_s)
+    case = replace(written, record_format=form, schedule=schedule, plan=plan)
+    record = case_record(case)
     need = storage_need(record.flow_kg_s, record.step_s)
     tables = _tables(case.vessel, case.conditions, _Whole(case))
     return record, chosen_days(case, record, need, tables).days, need
