@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
 
 from evenfire.plan.inputs import AlternativeRules, PlanInputs, VesselUse
 
@@ -23,6 +24,11 @@ def _as_is(inputs: PlanInputs) -> AlternativeRules:
         vessel=VesselUse.NONE,
         adequate=False,
     )
+
+
+def _staggered_starts(inputs: PlanInputs) -> AlternativeRules:
+    """Today's boilers for a demand with shifted batch starts, of which the inputs must be made."""
+    return replace(_as_is(inputs), name="staggered starts")
 
 
 def _bigger_boiler(inputs: PlanInputs) -> AlternativeRules:
@@ -85,6 +91,7 @@ def _free_choice(inputs: PlanInputs) -> AlternativeRules:
 
 RULES: dict[str, Callable[[PlanInputs], AlternativeRules]] = {
     "as is": _as_is,
+    "staggered starts": _staggered_starts,
     "bigger boiler": _bigger_boiler,
     "further boiler": _further_boiler,
     "storage": _storage,

@@ -2,32 +2,43 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from importlib.metadata import version
 
 from evenfire.appraisal.alternatives import RULES
+from evenfire.appraisal.basis import Bases, basis, case_bases
 from evenfire.appraisal.case_record import case_record
-from evenfire.appraisal.day_choice import chosen_days, day_notices
-from evenfire.appraisal.plan_inputs import plan_inputs
+from evenfire.appraisal.day_choice import day_notices
 from evenfire.appraisal.priced import Priced, alternative_result, priced, unplanned_result
 from evenfire.appraisal.results import AlternativeResult, Appraisal
 from evenfire.appraisal.verdict import best_of, verdict_words
 from evenfire.appraisal.vessels import window_tables
+from evenfire.appraisal.whole_record import whole_record_certificates, whole_record_difference
 from evenfire.case.case import Case
-from evenfire.demand.series import DemandRecord, TypicalDays
-from evenfire.demand.storage_need import storage_need
 from evenfire.errors import InfeasibleError, Notice, Problem
 from evenfire.plan.inputs import PlanInputs
+from evenfire.plan.operation import Operation
 from evenfire.plan.optimum import best_plan
 from evenfire.plan.outcome import Has, Plan, PlanOutcome, Stop, Watcher
+from evenfire.plan.store import PlanStore
 
 _PACKAGES = ("evenfire", "pyomo", "highspy", "numpy", "pandas", "CoolProp", "numba", "scipy")
 
 
+WHOLE_RECORD_GAP = 3e-3
+"""Gap asked of the certificate for the whole record [1]."""
+WHOLE_RECORD_TIME_LIMIT_S = 300.0
+"""Time for it per alternative [s]."""
 _LEAST_SHORTFALL_T = 0.05
 """Shortfalls below this are rounding [t]."""
 
 
-def appraise(case: Case, watch: Watcher | None = None) -> Appraisal:
+def appraise(
+    case: Case,
+    watch: Watcher | None = None,
+    store: PlanStore | None = None,
+    whole_record: bool = False,
+) -> Appraisal:
     """Plan every alternative of a case and say which is cheapest.
 
     Parameters
@@ -36,6 +47,10 @@ def appraise(case: Case, watch: Watcher | None = None) -> Appraisal:
         From :func:`evenfire.case.load.load_case`.
     watch : callable, optional
         Called with a ``Progress`` as cost and bound close.
+    store : PlanStore, optional
+        Plans of earlier runs.
+    whole_record : bool
+        Also plan every alternative on every day of the record at the record's own step.
 
     Returns
     -------
@@ -48,30 +63,52 @@ def appraise(case: Case, watch: Watcher | None = None) -> Appraisal:
     InfeasibleError
         E101 if the reference, or every alternative, has no plan.
     """
-    record = case_record(case)
-    need = storage_need(record.flow_kg_s, record.step_s)
     tables = window_tables(case)
-    chosen = chosen_days(case, record, need, tables)
-    typical = chosen.days
-    inputs = plan_inputs(case, record, typical, need, tables)
-    outcomes = planned_alternatives(case, inputs, watch)
+    bases = case_bases(case, tables)
+    record, need, chosen = bases.usual.record, bases.usual.need, bases.usual.chosen
+    outcomes = planned_alternatives(case, bases, watch, store)
     prices = {
-        outcome.alternative: priced(case, inputs, tables, outcome.plan)
+        outcome.alternative: priced(case, basis.inputs, tables, outcome.plan)
         for outcome in outcomes
-        if outcome.plan is not None
+        if outcome.plan is not None and (basis := bases.of(outcome.alternative)) is not None
     }
     reference = prices.get(case.plan.reference)
     if reference is None:
         raise _no_reference(case, outcomes)
     results = tuple(
-        _result(case, inputs, outcome, prices.get(outcome.alternative), reference, record, typical)
-        for outcome in outcomes
+        _result(case, bases, outcome, prices.get(outcome.alternative), reference) for outcome in outcomes
     )
+    results = tuple(
+        replace(
+            result,
+            typical_days_difference=whole_record_difference(basis.inputs, basis.record, outcome.plan),
+        )
+        if outcome.plan is not None and (basis := bases.of(outcome.alternative)) is not None
+        else result
+        for result, outcome in zip(results, outcomes, strict=True)
+    )
+    if whole_record:
+        usual = tuple(name for name in case.plan.alternatives if bases.of(name) is bases.usual)
+        certificates = whole_record_certificates(
+            replace(case, plan=replace(case.plan, alternatives=usual)),
+            record,
+            chosen.days,
+            need,
+            tables,
+            step_s=record.step_s,
+            gap=max(case.plan.gap, WHOLE_RECORD_GAP),
+            time_limit_s=WHOLE_RECORD_TIME_LIMIT_S,
+            watch=watch,
+        )
+        results = tuple(
+            replace(result, whole_record=certificates[result.name]) if result.name in usual else result
+            for result in results
+        )
     best = best_of(results)
     return Appraisal(
         case=case,
         record=record,
-        typical_days=typical,
+        typical_days=chosen.days,
         day_errors=chosen.errors,
         storage_need=need,
         alternatives=results,
@@ -79,13 +116,18 @@ def appraise(case: Case, watch: Watcher | None = None) -> Appraisal:
         best=best.name,
         verdict=verdict_words(case, results, best),
         fuel_basis=case.fuel_price_basis,
-        notices=(*day_notices(case, chosen), *_notices(results)),
+        notices=(*day_notices(case, chosen), *bases.notices, *_notices(results)),
         versions=tuple((package, version(package)) for package in _PACKAGES),
     )
 
 
+def case_inputs(case: Case) -> PlanInputs:
+    """The plan's inputs of a case, read from its files."""
+    return basis(case, case_record(case), window_tables(case)).inputs
+
+
 def planned_alternatives(
-    case: Case, inputs: PlanInputs, watch: Watcher | None = None
+    case: Case, bases: Bases, watch: Watcher | None = None, store: PlanStore | None = None
 ) -> tuple[PlanOutcome, ...]:
     """The plan of every alternative, each judged in the mixed-integer model.
 
@@ -93,29 +135,33 @@ def planned_alternatives(
     """
     outcomes: list[PlanOutcome] = []
     plans: list[Plan] = []
+    operation = Operation(bases.usual.inputs, joined=False)
     for name in case.plan.alternatives:
-        rules = RULES[name](inputs)
-        if outcomes and outcomes[-1].stop is Stop.INTERRUPTED:
-            outcomes.append(_not_begun(name))
+        basis = bases.of(name)
+        if basis is None or (outcomes and outcomes[-1].stop is Stop.INTERRUPTED):
+            outcomes.append(_not_begun(name, Stop.INFEASIBLE if basis is None else Stop.INTERRUPTED))
             continue
+        usual = basis is bases.usual
         outcome = best_plan(
-            inputs,
-            rules,
+            basis.inputs,
+            RULES[name](basis.inputs),
             gap=case.plan.gap,
             time_limit_s=case.plan.time_limit_s,
-            known=tuple(plans),
+            known=tuple(plans) if usual else (),
             watch=watch,
+            store=store,
+            operation=operation if usual else None,
         )
-        if outcome.plan is not None:
+        if outcome.plan is not None and usual:
             plans.append(outcome.plan)
         outcomes.append(outcome)
     return tuple(outcomes)
 
 
-def _not_begun(name: str) -> PlanOutcome:
+def _not_begun(name: str, stop: Stop) -> PlanOutcome:
     return PlanOutcome(
         alternative=name,
-        stop=Stop.INTERRUPTED,
+        stop=stop,
         has=Has.NOTHING,
         cost_k=None,
         bound_k=None,
@@ -128,16 +174,15 @@ def _not_begun(name: str) -> PlanOutcome:
 
 def _result(
     case: Case,
-    inputs: PlanInputs,
+    bases: Bases,
     outcome: PlanOutcome,
     price: Priced | None,
     reference: Priced,
-    record: DemandRecord,
-    typical: TypicalDays,
 ) -> AlternativeResult:
-    if price is None or outcome.plan is None:
+    basis = bases.of(outcome.alternative)
+    if price is None or basis is None:
         return unplanned_result(outcome, reference)
-    return alternative_result(case, inputs, outcome, price, reference, record, typical)
+    return alternative_result(case, basis.inputs, outcome, price, reference, basis.record, basis.chosen.days)
 
 
 def _no_reference(case: Case, outcomes: tuple[PlanOutcome, ...]) -> InfeasibleError:

@@ -85,6 +85,22 @@ class VesselChoice:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class WholeRecord:
+    """An alternative planned on every day of the record, each followed by the next."""
+
+    step_s: float
+    days: int
+    net_present_cost: float | None
+    bound: float | None
+    """Proven lower bound for the record as a whole [currency]."""
+    gap: float | None
+    boilers: tuple[str, ...]
+    vessel_volume_m3: float | None
+    stopped: str
+    """Why the search ended."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class DaySchedule:
     """Planned dispatch of one typical day."""
 
@@ -157,6 +173,10 @@ class AlternativeResult:
     record_shortfall_t: float
     """Steam of the whole raw record above firm boiler capacity that the vessel cannot cover [t]."""
     schedule: tuple[DaySchedule, ...] = field(repr=False)
+    typical_days_difference: float | None = None
+    """Operating cost of this plant on typical days over that on every day of the record, less one [1]."""
+    whole_record: WholeRecord | None = None
+    """Set where the certificate for the whole record was asked for."""
     solve_seconds: float = field(compare=False)
 
     @property

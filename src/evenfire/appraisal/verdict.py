@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from evenfire.appraisal.results import AlternativeResult
+from evenfire.appraisal.staggering import NAME
 from evenfire.case.case import Case
 from evenfire.units import J_PER_MWH, bar_abs_to_pa, pa_to_bar_g
 
@@ -103,6 +104,7 @@ def _same_plant(first: AlternativeResult, second: AlternativeResult) -> bool:
         and second.planned
         and [x.name for x in first.boilers] == [x.name for x in second.boilers]
         and first.vessel == second.vessel
+        and NAME not in (first.name, second.name)
     )
 
 

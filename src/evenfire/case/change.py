@@ -179,3 +179,12 @@ def _stated(raw: Mapping[str, Any], place: Location) -> float | None:
         elif isinstance(at, list) and isinstance(step, int):
             at = at[step]
     return float(at) if isinstance(at, int | float) else None
+
+
+def stated_inputs(file: Path) -> tuple[tuple[str, float], ...]:
+    """Path and value of every numeric input that a readable case file states, boilers by name."""
+    file = file / "case.toml" if file.is_dir() else file
+    raw = tomllib.loads(file.read_text(encoding="utf-8-sig"))
+    places = (place for place, _ in _numeric_places(raw, CaseFile, ()))
+    found = ((_path(place, raw, by_name=True), _stated(raw, place)) for place in places)
+    return tuple((path, value) for path, value in found if value is not None)

@@ -14,10 +14,19 @@ from evenfire.appraisal.results import AlternativeResult, Appraisal, Standing
 from evenfire.case.load import load_case
 from evenfire.errors import ExitStatus
 from evenfire.plan.outcome import Progress
+from evenfire.plan.store import PlanStore, default_folder
 from evenfire.report.folder import check_output_folder, write_appraisal
 
 
-def run(case_path: Path, out: Path | None, *, replace: bool, quiet: bool) -> ExitStatus:
+def run(
+    case_path: Path,
+    out: Path | None,
+    *,
+    replace: bool,
+    quiet: bool,
+    fresh: bool,
+    whole_record: bool,
+) -> ExitStatus:
     """Appraise a case and write its folder; the exit status says how far the plans are proven."""
     console = Console(quiet=quiet, highlight=False)
     case = load_case(case_path)
@@ -36,7 +45,8 @@ def run(case_path: Path, out: Path | None, *, replace: bool, quiet: bool) -> Exi
         def watch(progress: Progress) -> None:
             bar.update(task, description=_progress_words(progress))
 
-        result = appraise(case, watch)
+        store = None if fresh else PlanStore(default_folder())
+        result = appraise(case, watch, store, whole_record)
     write_appraisal(result, folder, replace)
     console.print(_table(result))
     console.print(result.verdict, soft_wrap=True)

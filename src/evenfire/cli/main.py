@@ -36,6 +36,16 @@ def appraise(
     ] = None,
     replace: Annotated[bool, typer.Option("--replace", help="Overwrite an existing output folder.")] = False,
     quiet: Annotated[bool, typer.Option("--quiet", help="Print only problems.")] = False,
+    fresh: Annotated[
+        bool, typer.Option("--fresh", help="Plan anew, without the plans kept from earlier runs.")
+    ] = False,
+    whole_record: Annotated[
+        bool,
+        typer.Option(
+            "--whole-record",
+            help="Also plan on every day of the record at its own step (up to 5 minutes an alternative).",
+        ),
+    ] = False,
 ) -> None:
     """Plan every alternative of a case, price it and write the report.
 
@@ -45,7 +55,25 @@ def appraise(
     """
     from evenfire.cli.appraise import run
 
-    raise typer.Exit(run(case, out, replace=replace, quiet=quiet))
+    raise typer.Exit(run(case, out, replace=replace, quiet=quiet, fresh=fresh, whole_record=whole_record))
+
+
+@app.command()
+def model(
+    case: CaseArgument,
+    alternative: Annotated[str, typer.Option(help="Name of the alternative, e.g. 'storage'.")],
+    out: Annotated[Path, typer.Option(metavar="FILE", help="File to write, ending in .mps or .lp.")],
+    replace: Annotated[bool, typer.Option("--replace", help="Overwrite an existing file.")] = False,
+) -> None:
+    """Write the mixed-integer model of an alternative for any solver.
+
+    Tonnes, MWh and thousands of currency; the minimum is the net present cost in thousands.
+
+    Example: evenfire model cases/dyehouse --alternative storage --out storage.mps
+    """
+    from evenfire.cli.model import run
+
+    raise typer.Exit(run(case, alternative, out, replace=replace))
 
 
 @app.command()
@@ -167,6 +195,53 @@ def plant(
     from evenfire.cli.plant import run
 
     raise typer.Exit(run(case, out, replace=replace, quiet=quiet))
+
+
+@app.command()
+def sweep(
+    case: CaseArgument,
+    vary: Annotated[
+        list[str] | None,
+        typer.Option(
+            metavar="PATH=LOW:HIGH:COUNT",
+            help="A numeric input by its path in the case, and its values; may be given twice.",
+        ),
+    ] = None,
+    rank_percent: Annotated[
+        float | None,
+        typer.Option(help="Also rank inputs, each lowered and raised by this share of its value."),
+    ] = None,
+    out: Annotated[
+        Path | None, typer.Option(metavar="FOLDER", help="Output folder; CASE/sweep unless given.")
+    ] = None,
+    processes: Annotated[int, typer.Option(min=1, max=256, help="Processes of this machine to work in.")] = 1,
+    cluster: Annotated[
+        str | None, typer.Option(metavar="ADDRESS", help="Work on the Dask cluster of this scheduler.")
+    ] = None,
+    replace: Annotated[bool, typer.Option("--replace", help="Overwrite an existing output folder.")] = False,
+    quiet: Annotated[bool, typer.Option("--quiet", help="Print only problems.")] = False,
+) -> None:
+    """Plan a case over one or two of its inputs: when does the answer change?
+
+    Writes sweep.json, sweep.csv and sweep.html into one folder. The same command goes on where an
+    interrupted one stopped.
+
+    Example: evenfire sweep cases/cannery --vary fuel.price_per_mwh=20:120:25 --out prices
+    """
+    from evenfire.cli.sweep import run
+
+    raise typer.Exit(
+        run(
+            case,
+            tuple(vary or ()),
+            out,
+            rank_percent=rank_percent,
+            processes=processes,
+            cluster=cluster,
+            replace=replace,
+            quiet=quiet,
+        )
+    )
 
 
 @app.command()

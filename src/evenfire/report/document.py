@@ -12,6 +12,7 @@ from evenfire.appraisal.results import (
     BoilerUse,
     CostLine,
     VesselChoice,
+    WholeRecord,
 )
 from evenfire.case.case import Case
 from evenfire.demand.enough_days import DayErrors
@@ -112,8 +113,25 @@ def _alternative(result: AlternativeResult) -> dict[str, Any]:
         "payback_note": result.payback.note,
         "boilers": [_boiler(each) for each in result.boilers],
         "vessel": _vessel(vessel) if vessel is not None else None,
+        "typical_days_difference_percent": (
+            None if result.typical_days_difference is None else 100.0 * result.typical_days_difference
+        ),
+        "whole_record": None if result.whole_record is None else _whole_record(result.whole_record),
         "cost_lines": [_cost_line(each) for each in result.cost_lines],
         "fuel_parts_mwh_per_year": {part.name: part.mwh_per_year for part in result.fuel_parts},
+    }
+
+
+def _whole_record(whole: WholeRecord) -> dict[str, Any]:
+    return {
+        "step_s": whole.step_s,
+        "days": whole.days,
+        "net_present_cost": whole.net_present_cost,
+        "bound": whole.bound,
+        "gap": whole.gap,
+        "boilers": list(whole.boilers),
+        "vessel_volume_m3": whole.vessel_volume_m3,
+        "stopped": whole.stopped,
     }
 
 

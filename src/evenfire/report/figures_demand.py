@@ -8,6 +8,7 @@ import numpy as np
 from matplotlib.axes import Axes
 
 from evenfire.appraisal.results import AlternativeResult, Appraisal
+from evenfire.appraisal.staggering import NAME
 from evenfire.demand.series import DemandRecord, FloatArray
 from evenfire.demand.statistics import load_duration_curve
 from evenfire.report.figures_paper import BLUE, INK, MARKERS, SKY, VERMILION, Drawing, drawing, label
@@ -95,7 +96,7 @@ def storage_need_drawing(appraisal: Appraisal) -> Drawing:
     need = appraisal.storage_need
     capacity = need.capacity_kg_s * kg_s_to_t_h(1.0)
     storage = need.storage_kg / KG_PER_TONNE
-    planned = [each for each in appraisal.alternatives if each.planned]
+    planned = [each for each in appraisal.alternatives if each.planned and each.name != NAME]
     points = [(each.name, firm_capacity_t_h(each), steam_capacity_t(each)) for each in planned]
     smallest = min((x for _, x, _ in points), default=float(capacity[0]))
     left = min(0.97 * smallest, max(float(capacity[0]), 0.8 * smallest))

@@ -16,8 +16,11 @@ from evenfire.report.document import document_text
 from evenfire.report.page import report_page
 from evenfire.report.page_plant import plant_page
 from evenfire.report.page_record import record_page
+from evenfire.report.page_sweep import sweep_page
 from evenfire.report.record_document import record_document_text
+from evenfire.report.sweep_document import sweep_document_text, sweep_table
 from evenfire.report.tables import dispatch_table
+from evenfire.sweep.results import SweepResult
 
 DOCUMENT_FILE = "appraisal.json"
 DISPATCH_FILE = "dispatch.csv"
@@ -28,6 +31,12 @@ RECORD_PAGE_FILE = "record.html"
 RECORD_FILES = (RECORD_DOCUMENT_FILE, RECORD_PAGE_FILE)
 PLANT_PAGE_FILE = "plant.html"
 PLANT_FILES = (PLANT_PAGE_FILE,)
+
+
+SWEEP_DOCUMENT_FILE = "sweep.json"
+SWEEP_TABLE_FILE = "sweep.csv"
+SWEEP_PAGE_FILE = "sweep.html"
+SWEEP_FILES = (SWEEP_DOCUMENT_FILE, SWEEP_TABLE_FILE, SWEEP_PAGE_FILE)
 
 
 def check_output_folder(folder: Path, replace: bool, own: tuple[str, ...] = OUTPUT_FILES) -> None:
@@ -137,6 +146,31 @@ def write_plant(sheet: PlantSheet, folder: Path, replace: bool) -> None:
         As for :func:`check_output_folder`.
     """
     _write_texts({PLANT_PAGE_FILE: plant_page(sheet)}, folder, replace)
+
+
+def write_sweep(result: SweepResult, folder: Path, replace: bool) -> None:
+    """Write ``sweep.json``, ``sweep.csv`` and ``sweep.html`` into a folder, by the rules of an appraisal.
+
+    Parameters
+    ----------
+    result
+        What to write.
+    folder
+        Where to; created, its parent must exist.
+    replace
+        Whether a sweep's results that are already there may be replaced.
+
+    Raises
+    ------
+    OutputError
+        As for :func:`check_output_folder`.
+    """
+    texts = {
+        SWEEP_DOCUMENT_FILE: sweep_document_text(result),
+        SWEEP_TABLE_FILE: sweep_table(result),
+        SWEEP_PAGE_FILE: sweep_page(result),
+    }
+    _write_texts(texts, folder, replace)
 
 
 def _write_texts(texts: dict[str, str], folder: Path, replace: bool) -> None:

@@ -7,6 +7,7 @@ import datetime as dt
 import numpy as np
 
 from evenfire.appraisal.results import Appraisal
+from evenfire.appraisal.staggering import NAME
 from evenfire.report.figures_demand import firm_capacity_t_h, steam_capacity_t
 from evenfire.report.formats import MISSING, digits, number, plain, short
 from evenfire.report.page_table import Table, plain_table
@@ -16,7 +17,10 @@ SECONDS_PER_MINUTE = 60.0
 
 
 def storage_need_table(appraisal: Appraisal) -> Table:
-    """Storage that the record needs at each alternative's boiler rating, and the stretch that decides it."""
+    """Storage that the record needs at each alternative's boiler rating, and the stretch that decides it.
+
+    Staggered starts change the record itself and are left out.
+    """
     return plain_table(
         "What the record asks of each alternative.",
         (
@@ -37,7 +41,7 @@ def storage_need_table(appraisal: Appraisal) -> Table:
                 _deciding_stretch(appraisal, firm_capacity_t_h(each)),
             )
             for each in appraisal.alternatives
-            if each.planned
+            if each.planned and each.name != NAME
         ),
         word_columns=(5,),
     )
