@@ -3,8 +3,9 @@
 A boiler's burner state is its age: off for 1, 2, ... steps (the last meaning "or longer"), then lit for
 1, 2, ... steps likewise, so that minimum times are states. The joint state is a mixed-radix number
 over the boilers; the other coordinate is stored steam in quanta. ``lap`` carries the least cost of
-every state once round the day; ``path`` also keeps the way. Work per step is states * levels * outputs;
-memory is states * levels, for ``path`` times the steps.
+every state once round the day; ``path`` also finds the way, from layers kept every few steps. Work per
+step is states * levels * outputs. Layers have infinite margins so that the innermost loop, which takes
+four outputs at once, has no bounds to look after: that is what processors do fastest.
 """
 
 from __future__ import annotations
@@ -35,79 +36,32 @@ def joint_states(off_ages: IntArray, lit_ages: IntArray) -> tuple[IntArray, IntA
     return strides[:-1].astype(np.int64), lit
 
 
+_AT_ONCE = 4
+"""Changes of stored steam taken at once; the margin of a layer covers them."""
+
+
 @njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
-def _switch(
-    before: FloatArray,
-    after: FloatArray,
-    stride: int,
-    off: int,
-    lit: int,
-    start: float,
-) -> None:
+def _switch(before: FloatArray, after: FloatArray, stride: int, off: int, lit: int, start: float) -> None:
     """One boiler ages by a step, lights or goes out where its age allows."""
-    states, levels = before.shape
+    states, width = before.shape
     size = off + lit
     for state in range(states):
         age = state // stride % size
         base = state - age * stride
-        if age < off:
-            younger = base + (age - 1) * stride
-            if age == 0:
-                source = before[base + (size - 1) * stride]
-                for s in range(levels):
-                    after[state, s] = source[s]
-            else:
-                for s in range(levels):
-                    after[state, s] = before[younger, s]
-            if age == off - 1:
-                for s in range(levels):
-                    after[state, s] = min(after[state, s], before[state, s])
-        else:
-            if age == off:
-                source = before[base + (off - 1) * stride]
-                for s in range(levels):
-                    after[state, s] = source[s] + start
-            else:
-                younger = base + (age - 1) * stride
-                for s in range(levels):
-                    after[state, s] = before[younger, s]
-            if age == size - 1:
-                for s in range(levels):
-                    after[state, s] = min(after[state, s], before[state, s])
-
-
-@njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
-def _switch_tracked(
-    before: FloatArray,
-    after: FloatArray,
-    came: NDArray[np.int32],
-    kept: NDArray[np.int32],
-    stride: int,
-    off: int,
-    lit: int,
-    start: float,
-) -> None:
-    """``_switch`` that also carries which state each state came from."""
-    states, levels = before.shape
-    size = off + lit
-    for state in range(states):
-        age = state // stride % size
-        base = state - age * stride
+        target = after[state]
         if age == 0:
-            source, extra = base + (size - 1) * stride, 0.0
+            source, extra = before[base + (size - 1) * stride], 0.0
         elif age == off:
-            source, extra = base + (off - 1) * stride, start
+            source, extra = before[base + (off - 1) * stride], start
         else:
-            source, extra = base + (age - 1) * stride, 0.0
-        stays = age in (off - 1, size - 1)
-        for s in range(levels):
-            cost = before[source, s] + extra
-            origin = came[source, s]
-            if stays and before[state, s] <= cost:
-                cost = before[state, s]
-                origin = came[state, s]
-            after[state, s] = cost
-            kept[state, s] = origin
+            source, extra = before[base + (age - 1) * stride], 0.0
+        if age == off - 1 or age == size - 1:
+            stays = before[state]
+            for s in range(width):
+                target[s] = min(source[s] + extra, stays[s])
+        else:
+            for s in range(width):
+                target[s] = source[s] + extra
 
 
 @njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
@@ -128,6 +82,74 @@ def _move_costs(
         if g > 0:
             cost -= credit * g
         moves[g - lowest] = cost
+
+
+@njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
+def _cheapest_moves(
+    source: FloatArray, target: FloatArray, moves: FloatArray, count: int, first: int
+) -> None:
+    """Least cost of every level of ``target`` over ``count`` moves, the first one from ``first``."""
+    levels = target.size
+    target[:] = np.inf
+    whole = count // _AT_ONCE * _AT_ONCE
+    for j in range(0, whole, _AT_ONCE):
+        a = source[first - j : first - j + levels]
+        b = source[first - j - 1 : first - j - 1 + levels]
+        c = source[first - j - 2 : first - j - 2 + levels]
+        d = source[first - j - 3 : first - j - 3 + levels]
+        cost_a, cost_b, cost_c, cost_d = moves[j], moves[j + 1], moves[j + 2], moves[j + 3]
+        for s in range(levels):
+            least = min(min(a[s] + cost_a, b[s] + cost_b), min(c[s] + cost_c, d[s] + cost_d))
+            target[s] = min(target[s], least)
+    for j in range(whole, count):
+        a = source[first - j : first - j + levels]
+        cost_a = moves[j]
+        for s in range(levels):
+            target[s] = min(target[s], a[s] + cost_a)
+
+
+@njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
+def _margin(levels: int, most: IntArray, discharge: int) -> int:
+    """Infinite cells that a layer needs at either end."""
+    return min(levels - 1, max(most.max(), discharge)) + _AT_ONCE
+
+
+@njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
+def _layer(value: FloatArray, margin: int) -> FloatArray:
+    """Costs of all states and levels with the margins added."""
+    states, levels = value.shape
+    layer = np.full((states, levels + 2 * margin), np.inf)
+    layer[:, margin : margin + levels] = value
+    return layer
+
+
+@njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
+def _advance(
+    before: FloatArray,
+    after: FloatArray,
+    margin: int,
+    moves: FloatArray,
+    demand: int,
+    costs: FloatArray,
+    most: IntArray,
+    lit_set: IntArray,
+    unmet: float,
+    credit: float,
+    discharge: int,
+) -> None:
+    """Steam made, stored and drawn in one step, burner states as they are."""
+    states, width = before.shape
+    levels = width - 2 * margin
+    for state in range(states):
+        lit = lit_set[state]
+        target = after[state, margin : margin + levels]
+        if not np.isfinite(costs[lit, 0]):
+            target[:] = np.inf
+            continue
+        lowest = -min(discharge, demand, levels - 1)
+        highest = min(levels - 1, most[lit])
+        _move_costs(costs[lit], most[lit], demand, unmet, credit, lowest, highest, moves)
+        _cheapest_moves(before[state], target, moves, highest - lowest + 1, margin - lowest)
 
 
 @njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
@@ -166,30 +188,47 @@ def lap(
     -------
     array of shape (states, levels)
     """
-    states, levels = value.shape
-    before = value.copy()
-    after = np.empty_like(value)
-    moves = np.empty(discharge + levels + 1)
+    levels = value.shape[1]
+    margin = _margin(levels, most, discharge)
+    before = _layer(value, margin)
+    after = before.copy()
+    moves = np.empty(2 * margin + 1)
     for t in range(demand.size):
         for b in range(start.size):
             _switch(before, after, strides[b], off_ages[b], lit_ages[b], start[b])
             before, after = after, before
-        for state in range(states):
-            lit = lit_set[state]
-            target = after[state]
-            target[:] = np.inf
-            if not np.isfinite(costs[lit, 0]):
-                continue
-            lowest = -min(discharge, demand[t], levels - 1)
-            highest = min(levels - 1, most[lit])
-            _move_costs(costs[lit], most[lit], demand[t], unmet, credit, lowest, highest, moves)
-            source = before[state]
-            for g in range(lowest, highest + 1):
-                cost = moves[g - lowest]
-                for s in range(max(0, g), min(levels, levels + g)):
-                    target[s] = min(target[s], source[s - g] + cost)
+        _advance(before, after, margin, moves, demand[t], costs, most, lit_set, unmet, credit, discharge)
         before, after = after, before
-    return before
+    return before[:, margin : margin + levels].copy()
+
+
+@njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
+def _switch_tracked(
+    before: FloatArray,
+    after: FloatArray,
+    came: IntArray,
+    kept: IntArray,
+    stride: int,
+    off: int,
+    lit: int,
+    start: float,
+) -> None:
+    """``_switch`` at one level that also carries which state each state came from."""
+    size = off + lit
+    for state in range(before.shape[0]):
+        age = state // stride % size
+        base = state - age * stride
+        if age == 0:
+            source, extra = base + (size - 1) * stride, 0.0
+        elif age == off:
+            source, extra = base + (off - 1) * stride, start
+        else:
+            source, extra = base + (age - 1) * stride, 0.0
+        after[state, 0] = before[source, 0] + extra
+        kept[state] = came[source]
+        if (age == off - 1 or age == size - 1) and before[state, 0] <= after[state, 0]:
+            after[state, 0] = before[state, 0]
+            kept[state] = came[state]
 
 
 @njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
@@ -215,6 +254,8 @@ def path(
 
     ``hold`` > 1 lets burners change only at steps t with (t - offset) % hold == 0, which keeps
     minimum times of up to ``hold`` steps without ages (the day's length must be a multiple of it).
+    Layers are kept at the start of each of about sqrt(steps) blocks; the way back computes one block's
+    layers at a time again.
 
     Returns
     -------
@@ -225,53 +266,78 @@ def path(
     """
     states, levels = value.shape
     steps = demand.size
-    before = value.copy()
-    after = np.empty_like(before)
-    move = np.zeros((steps, states, levels), dtype=np.int16)
-    origin = np.zeros((steps, states, levels), dtype=np.int16)
-    came = np.empty((states, levels), dtype=np.int32)
-    kept = np.empty((states, levels), dtype=np.int32)
-    moves = np.empty(discharge + levels + 1)
-    for t in range(steps):
-        for state in range(states):
-            for s in range(levels):
-                came[state, s] = state
-        if (t - offset) % hold == 0:
-            for b in range(start.size):
-                _switch_tracked(before, after, came, kept, strides[b], off_ages[b], lit_ages[b], start[b])
-                before, after = after, before
-                came, kept = kept, came
-        for state in range(states):
+    block = int(np.ceil(np.sqrt(steps)))
+    blocks = (steps + block - 1) // block
+    margin = _margin(levels, most, discharge)
+    width = levels + 2 * margin
+    kept = np.empty((blocks, states, width))
+    layers = np.full((block + 1, states, width), np.inf)
+    switched = np.full((2, states, width), np.inf)
+    moves = np.empty(2 * margin + 1)
+    sequence = np.zeros(steps + 1, dtype=np.int64)
+    stored = np.zeros(steps + 1, dtype=np.int64)
+    column = np.empty((2, states, 1))
+    origin = np.empty((2, states), dtype=np.int64)
+    layers[0] = _layer(value, margin)
+    state, level = last_state, last_level
+    total = np.inf
+    for turn in range(2 * blocks - 1):
+        forward = turn < blocks
+        number = turn if forward else 2 * blocks - 2 - turn
+        if forward:
+            kept[number] = layers[0]
+        else:
+            layers[0] = kept[number]
+        first = number * block
+        length = min(block, steps - first)
+        for i in range(length):
+            t = first + i
+            now = layers[i]
+            if (t - offset) % hold == 0:
+                for b in range(start.size):
+                    _switch(now, switched[b % 2], strides[b], off_ages[b], lit_ages[b], start[b])
+                    now = switched[b % 2]
+            _advance(
+                now, layers[i + 1], margin, moves, demand[t], costs, most, lit_set, unmet, credit, discharge
+            )
+        if turn < blocks - 1:
+            layers[0] = layers[length]
+            continue
+        if forward:
+            total = layers[length, last_state, margin + last_level]
+            if not np.isfinite(total):
+                return total, sequence, stored
+            stored[steps] = last_level
+        for i in range(length - 1, -1, -1):
+            t = first + i
+            sequence[t + 1] = state
             lit = lit_set[state]
-            target = after[state]
-            target[:] = np.inf
-            for s in range(levels):
-                origin[t, state, s] = came[state, s]
-            if not np.isfinite(costs[lit, 0]):
-                continue
             lowest = -min(discharge, demand[t], levels - 1)
             highest = min(levels - 1, most[lit])
             _move_costs(costs[lit], most[lit], demand[t], unmet, credit, lowest, highest, moves)
-            source = before[state]
-            taken = move[t, state]
-            for g in range(lowest, highest + 1):
-                cost = moves[g - lowest]
-                for s in range(max(0, g), min(levels, levels + g)):
-                    candidate = source[s - g] + cost
-                    if candidate < target[s]:
-                        target[s] = candidate
-                        taken[s] = g
-        before, after = after, before
-    sequence = np.zeros(steps + 1, dtype=np.int64)
-    stored = np.zeros(steps + 1, dtype=np.int64)
-    best = before[last_state, last_level]
-    if not np.isfinite(best):
-        return best, sequence, stored
-    state = last_state
-    stored[steps] = last_level
-    for t in range(steps - 1, -1, -1):
-        sequence[t + 1] = state
-        stored[t] = stored[t + 1] - move[t, state, stored[t + 1]]
-        state = origin[t, state, stored[t]]
+            least, best_level, best_state = np.inf, level, state
+            for g in range(max(lowest, level - levels + 1), min(highest, level) + 1):
+                column[0, :, 0] = layers[i, :, margin + level - g]
+                for x in range(states):
+                    origin[0, x] = x
+                last = 0
+                if (t - offset) % hold == 0:
+                    for b in range(start.size):
+                        _switch_tracked(
+                            column[last],
+                            column[1 - last],
+                            origin[last],
+                            origin[1 - last],
+                            strides[b],
+                            off_ages[b],
+                            lit_ages[b],
+                            start[b],
+                        )
+                        last = 1 - last
+                cost = column[last, state, 0] + moves[g - lowest]
+                if cost < least:
+                    least, best_level, best_state = cost, level - g, origin[last, state]
+            state, level = best_state, best_level
+            stored[t] = level
     sequence[0] = state
-    return best, sequence, stored
+    return total, sequence, stored
