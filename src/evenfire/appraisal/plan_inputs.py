@@ -113,8 +113,8 @@ def _plan_boiler(case: Case, offer: BoilerOffer, working_pa: list[float], rates:
         PlanMode(
             name=mode.name.split(" ")[0],
             lit=mode.firing or mode.low_kg_s >= 0.499 * lowest_kg_s,
-            output_t_h=tuple(kg_s_to_t_h_array(mode.output_kg_s)),
-            fuel_mwh_h=tuple(mode.fuel_w_lhv / 1e6),
+            output_t_h=tuple(kg_s_to_t_h_array(mode.output_kg_s).tolist()),
+            fuel_mwh_h=tuple((mode.fuel_w_lhv / 1e6).tolist()),
             starts_per_h_low=mode.starts_per_s_low * SECONDS_PER_HOUR,
             starts_per_h_high=mode.starts_per_s_high * SECONDS_PER_HOUR,
         )

@@ -111,7 +111,8 @@ def _cheapest_moves(
 @njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
 def _margin(levels: int, most: IntArray, discharge: int) -> int:
     """Infinite cells that a layer needs at either end."""
-    return min(levels - 1, max(most.max(), discharge)) + _AT_ONCE
+    margin: int = min(levels - 1, max(most.max(), discharge)) + _AT_ONCE
+    return margin
 
 
 @njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
@@ -199,7 +200,8 @@ def lap(
             before, after = after, before
         _advance(before, after, margin, moves, demand[t], costs, most, lit_set, unmet, credit, discharge)
         before, after = after, before
-    return before[:, margin : margin + levels].copy()
+    reached: FloatArray = before[:, margin : margin + levels].copy()
+    return reached
 
 
 @njit(cache=True, nogil=True)  # type: ignore[untyped-decorator]
