@@ -24,12 +24,14 @@ from evenfire.plan.tables import mode_costs_k_h
 
 FloatArray = NDArray[np.float64]
 
-QUANTA_T_PER_H = (0.25, 0.125, 0.0625, 0.03125, 0.015625)
+QUANTA_T_PER_H = (0.5, 0.25, 0.125, 0.0625, 0.03125, 0.015625)
 """Wanted quantum per hour of step, from rough to fine bounds [t/h]."""
-EXPECTED_LOSS = (4e-3, 1e-3, 4e-4, 2e-4, 1e-4)
+EXPECTED_LOSS = (1e-2, 4e-3, 1e-3, 4e-4, 2e-4, 1e-4)
 """What a bound at each quantum usually loses of the cost: decides whether to refine it or to split."""
-_MOST_STATES = (1, 64, 64, 64, 64)
+_MOST_STATES = (1, 1, 64, 64, 64, 64)
 """Joint burner states told apart at each quantum; 1 leaves minimum times out of the bound."""
+USUAL_STAGE = 1
+"""Index of the quantum that plans of long records are made on; others one finer."""
 _THREADS = 2
 
 
@@ -55,7 +57,7 @@ class Operation:
     def __init__(self, inputs: PlanInputs, *, joined: bool) -> None:
         self._inputs = inputs
         self._joined = joined
-        self._plan_stage = 0 if joined else 1
+        self._plan_stage = USUAL_STAGE if joined else USUAL_STAGE + 1
         self._bounds: dict[tuple[int, Service, int, Store, int], float] = {}
         self._potentials: dict[tuple[Plant, int], FloatArray] = {}
         self._steam_k_t: dict[tuple[Service, int], float] = {}
