@@ -30,6 +30,8 @@ EXPECTED_LOSS = (1e-2, 4e-3, 1e-3, 4e-4, 2e-4, 1e-4)
 """What a bound at each quantum usually loses of the cost: decides whether to refine it or to split."""
 _MOST_STATES = (1, 1, 64, 64, 64, 64)
 """Joint burner states told apart at each quantum; 1 leaves minimum times out of the bound."""
+_MOST_CELLS = 30_000
+"""Joint burner states times levels up to which all states are told apart even if they are more."""
 USUAL_STAGE = 1
 """Index of the quantum that plans of long records are made on; others one finer."""
 _THREADS = 2
@@ -156,6 +158,10 @@ class Operation:
         if plant.store.capacity_t == 0.0:
             wanted /= 8.0
         divided = plant.boilers if self._joined else service
+        quantum = quantum_t(tuple(inputs.boiler(name) for name in divided), inputs.step_h, wanted)
+        most_states = _MOST_STATES[stage]
+        if most_states > 1 or plant.store.capacity_t == 0.0:
+            most_states = max(most_states, int(_MOST_CELLS / (2 + plant.store.capacity_t / quantum)))
         return DayProblem(
             demand_t_h=inputs.days[day].demand_t_h,
             step_h=inputs.step_h,
@@ -163,8 +169,8 @@ class Operation:
             pressure=plant.pressure,
             rates=inputs.rates,
             store=plant.store,
-            quantum_t=quantum_t(tuple(inputs.boiler(name) for name in divided), inputs.step_h, wanted),
-            most_states=_MOST_STATES[stage],
+            quantum_t=quantum,
+            most_states=most_states,
         )
 
     def _day_bound(self, plant: Plant, stage: int, which: tuple[int, Service]) -> float:
