@@ -53,7 +53,7 @@ def add_retort_cycle(day: Day, start_minute: float, vent_minutes: float) -> None
     """One sterilising cycle: vent, come-up, hold; cooling takes no steam."""
     come_up = day.uniform(4.0, 7.0)
     held_from = start_minute + vent_minutes + come_up
-    day.add(start_minute, vent_minutes, day.uniform(2850.0, 3250.0))
+    day.add(start_minute, vent_minutes, day.uniform(2500.0, 2850.0))
     day.add(start_minute + vent_minutes, come_up, day.uniform(1300.0, 1700.0))
     day.add(held_from, day.uniform(38.0, 50.0), day.uniform(300.0, 390.0))
 
