@@ -21,7 +21,8 @@ class CompiledModel:
 
     columns: tuple[Any, ...] = field(repr=False)
     """Pyomo variables in column order."""
-    row_names: tuple[str, ...] = field(repr=False)
+    rows: tuple[Any, ...] = field(repr=False)
+    """Pyomo constraints in row order."""
     matrix: csc_array = field(repr=False)
     row_low: FloatArray = field(repr=False)
     row_high: FloatArray = field(repr=False)
@@ -63,7 +64,7 @@ def compiled(model: pyo.ConcreteModel) -> CompiledModel:
     cost = np.asarray(form.c.todense(), dtype=float).ravel()
     return CompiledModel(
         columns=tuple(form.columns),
-        row_names=tuple(row.constraint.name for row in form.rows),
+        rows=tuple(row.constraint for row in form.rows),
         matrix=csc_array(form.A),
         row_low=low,
         row_high=high,
@@ -93,7 +94,8 @@ def highs_lp(model: CompiledModel, *, integer: bool, named: bool = False) -> hig
         lp.integrality_ = [kinds[int(flag)] for flag in model.integer]
     if named:
         lp.col_names_ = [solver_name(column.name) for column in model.columns]
-        lp.row_names_ = [f"{solver_name(name)}_{i}" for i, name in enumerate(model.row_names)]
+        names = [row.name for row in model.rows]
+        lp.row_names_ = [f"{solver_name(name)}_{i}" for i, name in enumerate(names)]
     return lp
 
 

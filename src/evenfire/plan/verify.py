@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from dataclasses import dataclass, replace
 
+from pyomo.common.gc_manager import PauseGC
+
 from evenfire.plan.compiled import compiled
 from evenfire.plan.inputs import AlternativeRules, PlanInputs, VesselUse
 from evenfire.plan.model import alternative_model
@@ -37,8 +39,9 @@ def judged(inputs: PlanInputs, rules: AlternativeRules, plan: Plan) -> Judgement
         allowed=frozenset(plan.boilers),
         vessel=VesselUse.NONE if plan.segment is None else VesselUse.REQUIRED,
     )
-    model = alternative_model(own, own_rules)
-    assign(model, own, plan if plan.segment is None else replace(plan, segment=0))
-    arrays = compiled(model)
+    with PauseGC():
+        model = alternative_model(own, own_rules)
+        assign(model, own, plan if plan.segment is None else replace(plan, segment=0))
+        arrays = compiled(model)
     point = arrays.values()
     return Judgement(cost_k=arrays.objective(point), largest_violation=arrays.largest_violation(point))
