@@ -12,7 +12,7 @@ from tests.plan.instances import Instance, instances, solved_whole
 
 
 @settings(
-    max_examples=60,
+    max_examples=200,
     deadline=None,
     derandomize=True,
     suppress_health_check=[HealthCheck.too_slow, HealthCheck.data_too_large],
@@ -20,7 +20,7 @@ from tests.plan.instances import Instance, instances, solved_whole
 @given(instances())
 def test_bound_and_plan_enclose_the_optimum(instance: Instance) -> None:
     """The bound never exceeds the solver's optimum, the plan never beats it, and the model agrees."""
-    outcome = Search(instance.inputs, instance.rules).run(gap=1e-4, time_limit_s=3.0)
+    outcome = Search(instance.inputs, instance.rules).run(gap=1e-3, time_limit_s=0.5)
     whole = solved_whole(instance)
 
     if whole.stop is Stop.INFEASIBLE:
