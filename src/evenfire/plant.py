@@ -68,6 +68,8 @@ class BoilerSpec:
     """Heat of the boiler carried off by purge air at each burner start [J]."""
     buffer_kg: float
     """Steam the boiler's own water gives between burner cut-out and cut-in pressure [kg]."""
+    burner_band_pa: float
+    """Pressure between burner cut-out and cut-in, half above and half below the working pressure [Pa]."""
     minimum_firing_s: float
     """Shortest time at or above smallest continuous firing once lit [s]."""
     minimum_off_s: float

@@ -20,6 +20,7 @@ FIVE_TONNES = BoilerSpec(
     standing_loss_w=28e3,
     purge_energy_j=20e6,
     buffer_kg=60.0,
+    burner_band_pa=1.0e5,
     minimum_firing_s=600.0,
     minimum_off_s=0.0,
     cold_start_s=2700.0,

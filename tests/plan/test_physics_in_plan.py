@@ -171,6 +171,7 @@ def _crooked(number: int) -> BoilerSpec:
         standing_loss_w=20e3,
         purge_energy_j=10e6,
         buffer_kg=80.0,
+        burner_band_pa=1.0e5,
         minimum_firing_s=0.0,
         minimum_off_s=0.0,
         cold_start_s=1800.0,

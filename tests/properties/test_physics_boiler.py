@@ -45,6 +45,7 @@ def boilers(draw: st.DrawFn) -> BoilerSpec:
         standing_loss_w=draw(st.floats(0.0, 2e5)),
         purge_energy_j=2e7,
         buffer_kg=draw(st.floats(1.0, 500.0)),
+        burner_band_pa=1.0e5,
         minimum_firing_s=0.0,
         minimum_off_s=draw(st.floats(0.0, 3600.0)),
         cold_start_s=3600.0,

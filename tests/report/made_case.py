@@ -33,6 +33,7 @@ def _boiler(name: str, rated_kg_h: float, turndown: float, best_efficiency_lhv: 
         standing_loss_w=25_000.0,
         purge_energy_j=15.0e6,
         buffer_kg=60.0,
+        burner_band_pa=1.0e5,
         minimum_firing_s=600.0,
         minimum_off_s=300.0,
         cold_start_s=2700.0,

@@ -103,6 +103,7 @@ def _without_starts(
             working_pa,
             kind.burner_pressure_band_bar * PA_PER_BAR,
         ),
+        burner_band_pa=kind.burner_pressure_band_bar * PA_PER_BAR,
         minimum_firing_s=kind.minimum_firing_minutes * SECONDS_PER_MINUTE,
         minimum_off_s=kind.minimum_off_minutes * SECONDS_PER_MINUTE,
         cold_start_s=0.0,
