@@ -47,7 +47,18 @@ TOTALS = 22
     VESSEL_ENERGY_LACK_J,
     VESSEL_ENERGY_THROUGH_J,
 ) = range(TOTALS)
-RUN_STEAM, RUN_FUEL, RUN_FIRING, RUN_HOT, RUN_STARTS, RUN_COLD = range(6)
+RUN_VALUES = 9
+(
+    RUN_STEAM,
+    RUN_FUEL,
+    RUN_STANDING_J,
+    RUN_START_J,
+    RUN_COLD_J,
+    RUN_FIRING,
+    RUN_HOT,
+    RUN_STARTS,
+    RUN_COLD,
+) = range(RUN_VALUES)
 
 
 @njit(cache=True)  # type: ignore[untyped-decorator]  # numba has no types
@@ -124,13 +135,13 @@ def run(
     vessel_energy: float,
     vessel_log: float,
 ) -> tuple[FloatArray, FloatArray, NDArray[np.float32]]:
-    """Totals (as named above), per boiler (boilers, 6), and traces (boilers + 6, steps).
+    """Totals (as named above), per boiler (boilers, values), and traces (boilers + 6, steps).
 
     Traces: supplied, charge, discharge [kg/s], boiler, process, vessel pressure [Pa], then outputs [kg/s].
     """
     boilers, steps = rated.size, demand_kg_s.size
     totals = np.zeros(TOTALS)
-    runs = np.zeros((boilers, 6))
+    runs = np.zeros((boilers, RUN_VALUES))
     traces = np.zeros((boilers + 6, steps), dtype=np.float32)
     lit = np.zeros(boilers, dtype=np.bool_)
     since = np.full(boilers, 1.0e9)
@@ -157,7 +168,7 @@ def run(
                 if service[b, day] and not hot[b]:
                     hot[b] = True
                     if t > 0:
-                        runs[b, RUN_FUEL] += cold_start_j[b]
+                        runs[b, RUN_COLD_J] += cold_start_j[b]
                         runs[b, RUN_COLD] += 1.0
                         totals[SERVICE] += 0.5 * buffer_kg[b]
                     y += 0.5 * buffer_kg[b]
@@ -217,7 +228,7 @@ def run(
                 if light and not lit[b]:
                     lit[b], since[b], output[b] = True, 0.0, 0.0
                     runs[b, RUN_STARTS] += 1.0
-                    runs[b, RUN_FUEL] += start_j[b]
+                    runs[b, RUN_START_J] += start_j[b]
                 elif out and lit[b]:
                     lit[b], since[b], output[b] = False, 0.0, 0.0
                 if lit[b]:
@@ -232,7 +243,10 @@ def run(
                     drained = standing_kg_s[b] * dt
                     y -= drained
                     totals[STANDING] += drained
-                    runs[b, RUN_FUEL] += standing_w[b] * dt - drained * fuel[b, 0] / lowest[b]
+                    # What standing takes from the buffer the burner makes good later as steam; that steam
+                    # is taken off here so that standing costs its own fuel and no more.
+                    runs[b, RUN_FUEL] -= drained * fuel[b, 0] / lowest[b]
+                    runs[b, RUN_STANDING_J] += standing_w[b] * dt
                     continue
                 if kind == GIVEN:
                     output[b] = lowest[b] if math.isnan(given[b, t]) else given[b, t]

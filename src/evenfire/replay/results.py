@@ -16,13 +16,21 @@ class BoilerRun:
 
     name: str
     steam_kg: float
-    fuel_j: float
-    """Net calorific value."""
+    firing_fuel_j: float
+    """Burnt for steam, net calorific value."""
+    standing_fuel_j: float
+    start_fuel_j: float
+    cold_start_fuel_j: float
     firing_s: float
     hot_s: float
     """In service, firing or not."""
     starts: int
     cold_starts: int
+
+    @property
+    def fuel_j(self) -> float:
+        """All fuel of the boiler, net [J]."""
+        return self.firing_fuel_j + self.standing_fuel_j + self.start_fuel_j + self.cold_start_fuel_j
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -62,7 +70,6 @@ class ReplayResult:
     unmet_kg: float
     vented_kg: float
     """Through the safety valve."""
-    fuel_j: float
     boilers: tuple[BoilerRun, ...]
     charged_kg: float
     discharged_kg: float
@@ -84,3 +91,8 @@ class ReplayResult:
     events: tuple[ReplayEvent, ...]
     """The ten with the most unmet steam, worst first."""
     trace: Trace = field(repr=False)
+
+    @property
+    def fuel_j(self) -> float:
+        """Fuel of all boilers, net [J]."""
+        return sum(boiler.fuel_j for boiler in self.boilers)

@@ -129,12 +129,14 @@ class Replay:
             supplied_kg=float(totals[kernel.SUPPLIED]),
             unmet_kg=float(totals[kernel.UNMET]),
             vented_kg=float(totals[kernel.VENTED]),
-            fuel_j=float(runs[:, kernel.RUN_FUEL].sum()),
             boilers=tuple(
                 BoilerRun(
                     name=spec.name,
                     steam_kg=float(row[kernel.RUN_STEAM]),
-                    fuel_j=float(row[kernel.RUN_FUEL]),
+                    firing_fuel_j=float(row[kernel.RUN_FUEL]),
+                    standing_fuel_j=float(row[kernel.RUN_STANDING_J]),
+                    start_fuel_j=float(row[kernel.RUN_START_J]),
+                    cold_start_fuel_j=float(row[kernel.RUN_COLD_J]),
                     firing_s=float(row[kernel.RUN_FIRING]),
                     hot_s=float(row[kernel.RUN_HOT]),
                     starts=round(float(row[kernel.RUN_STARTS])),

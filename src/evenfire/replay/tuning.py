@@ -11,7 +11,7 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
-from scipy.optimize import differential_evolution
+from scipy.optimize import Bounds, differential_evolution
 
 from evenfire.demand.series import DemandRecord
 from evenfire.plant import PlantSpec
@@ -99,7 +99,7 @@ def tuned(
     people = _PEOPLE_PER_SETTING * len(_BOUNDS)
     found = differential_evolution(
         cost,
-        _BOUNDS,
+        Bounds(*np.array(_BOUNDS).T),
         maxiter=max(1, trials // people - 1),
         popsize=_PEOPLE_PER_SETTING,
         seed=seed,
