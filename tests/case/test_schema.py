@@ -25,6 +25,7 @@ SUFFIXES = {
     "seconds": "s",
     "years": "a",
     "degc": "degC",
+    "trials": "1",
     "kwh": "kWh/start",
     "kwh_lhv": "kWh/start",
     "w_m2_k": "W/(m2 K)",

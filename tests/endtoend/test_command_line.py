@@ -42,7 +42,11 @@ def test_appraise_writes_the_folder(
     ]
     assert document["verdict"] in printed.replace("\n", " ") or document["verdict"].split(".")[0] in printed
     for entry in document["alternatives"]:
-        assert entry["bound"] <= entry["net_present_cost"] * (1 + 1e-9)
+        assert entry["bound"] <= entry["planned"]["net_present_cost"] * (1 + 1e-9)
+        assert entry["replay"]["mass_closure_relative"] < 1e-9
+        assert sum(line["present_cost"] for line in entry["cost_lines"]) == pytest.approx(
+            entry["net_present_cost"], rel=1e-9
+        )
         assert 0 <= entry["gap"] <= 0.0101
 
 

@@ -23,6 +23,7 @@ from evenfire.demand.series import DemandRecord, FloatArray, StorageNeed, Storag
 from evenfire.demand.typical_days import typical_days
 from evenfire.errors import Notice
 from tests.report.made_case import made_case
+from tests.report.made_replay import with_replay
 
 STEP_S = 300.0
 VESSEL = VesselChoice(
@@ -159,62 +160,64 @@ def made_alternative(
     upkeep = 30_000.0 * 8.9
     residual = -0.12 * investment
     energy = cost - investment - residual - upkeep - 400.0 * unmet * 8.6
-    return AlternativeResult(
-        name=name,
-        standing=standing,
-        note="",
-        solver_status="asked gap reached" if standing is Standing.PLANNED else "time limit",
-        net_present_cost=cost,
-        bound=cost * (1.0 - gap),
-        gap=gap,
-        investment=investment,
-        cost_lines=(
-            CostLine(name="investment", per_year=0.0, present_cost=investment),
-            CostLine(name="residual value", per_year=0.0, present_cost=residual),
-            CostLine(name="fuel", per_year=0.7 * energy / 9.1, present_cost=0.7 * energy),
-            CostLine(name="carbon", per_year=0.2 * energy / 9.7, present_cost=0.2 * energy),
-            CostLine(name="electricity", per_year=0.04 * energy / 9.4, present_cost=0.04 * energy),
-            CostLine(name="water", per_year=0.06 * energy / 9.7, present_cost=0.06 * energy),
-            CostLine(name="maintenance", per_year=24_000.0, present_cost=0.8 * upkeep),
-            CostLine(name="burner starts", per_year=6_000.0, present_cost=0.2 * upkeep),
-            CostLine(name="unmet steam", per_year=400.0 * unmet, present_cost=400.0 * unmet * 8.6),
-        ),
-        fuel_mwh_per_year=14_500.0 - 0.002 * investment,
-        fuel_parts=(
-            FuelPart(name="steam used", mwh_per_year=13_800.0 - 0.002 * investment),
-            FuelPart(name="blowdown", mwh_per_year=350.0),
-            FuelPart(name="standing loss", mwh_per_year=300.0),
-            FuelPart(name="purging at burner starts", mwh_per_year=60.0),
-            FuelPart(name="vessel gives more than it takes", mwh_per_year=-10.0),
-        ),
-        co2_t_per_year=2640.0,
-        steam_t_per_year=17_800.0,
-        burner_starts_per_year=1250.0 if vessel else 8600.0,
-        firing_hours_per_year=7350.0,
-        unmet_steam_t_per_year=unmet,
-        vented_steam_t_per_year=0.0,
-        fuel_saved_mwh_per_year=0.002 * investment,
-        fuel_saved_percent=0.2 * investment / 14_500.0,
-        co2_saved_t_per_year=0.0004 * investment,
-        net_present_saving=8_900_000.0 - cost,
-        payback=payback,
-        steam_cost_per_t=cost / 8.56 / 17_800.0,
-        boilers=tuple(
-            BoilerUse(
-                name=boiler,
-                rating_kg_h=rating_kg_h,
-                existing=existing,
-                steam_t_per_year=17_800.0 / len(boilers),
-                firing_hours_per_year=6400.0,
-                burner_starts_per_year=700.0,
-            )
-            for boiler, rating_kg_h, existing in boilers
-        ),
-        boiler_working_bar_abs=13.5 if vessel else 10.01325,
-        vessel=vessel,
-        record_shortfall_t=0.0 if cost < 8_900_000.0 else 36.2,
-        schedule=_schedules(days, tuple(rating / 1000.0 for _, rating, _ in boilers), vessel),
-        solve_seconds=12.3,
+    return with_replay(
+        AlternativeResult(
+            name=name,
+            standing=standing,
+            note="",
+            solver_status="asked gap reached" if standing is Standing.PLANNED else "time limit",
+            net_present_cost=cost,
+            bound=cost * (1.0 - gap),
+            gap=gap,
+            investment=investment,
+            cost_lines=(
+                CostLine(name="investment", per_year=0.0, present_cost=investment),
+                CostLine(name="residual value", per_year=0.0, present_cost=residual),
+                CostLine(name="fuel", per_year=0.7 * energy / 9.1, present_cost=0.7 * energy),
+                CostLine(name="carbon", per_year=0.2 * energy / 9.7, present_cost=0.2 * energy),
+                CostLine(name="electricity", per_year=0.04 * energy / 9.4, present_cost=0.04 * energy),
+                CostLine(name="water", per_year=0.06 * energy / 9.7, present_cost=0.06 * energy),
+                CostLine(name="maintenance", per_year=24_000.0, present_cost=0.8 * upkeep),
+                CostLine(name="burner starts", per_year=6_000.0, present_cost=0.2 * upkeep),
+                CostLine(name="unmet steam", per_year=400.0 * unmet, present_cost=400.0 * unmet * 8.6),
+            ),
+            fuel_mwh_per_year=14_500.0 - 0.002 * investment,
+            fuel_parts=(
+                FuelPart(name="steam used", mwh_per_year=13_800.0 - 0.002 * investment),
+                FuelPart(name="blowdown", mwh_per_year=350.0),
+                FuelPart(name="standing loss", mwh_per_year=300.0),
+                FuelPart(name="purging at burner starts", mwh_per_year=60.0),
+                FuelPart(name="vessel gives more than it takes", mwh_per_year=-10.0),
+            ),
+            co2_t_per_year=2640.0,
+            steam_t_per_year=17_800.0,
+            burner_starts_per_year=1250.0 if vessel else 8600.0,
+            firing_hours_per_year=7350.0,
+            unmet_steam_t_per_year=unmet,
+            vented_steam_t_per_year=0.0,
+            fuel_saved_mwh_per_year=0.002 * investment,
+            fuel_saved_percent=0.2 * investment / 14_500.0,
+            co2_saved_t_per_year=0.0004 * investment,
+            net_present_saving=8_900_000.0 - cost,
+            payback=payback,
+            steam_cost_per_t=cost / 8.56 / 17_800.0,
+            boilers=tuple(
+                BoilerUse(
+                    name=boiler,
+                    rating_kg_h=rating_kg_h,
+                    existing=existing,
+                    steam_t_per_year=17_800.0 / len(boilers),
+                    firing_hours_per_year=6400.0,
+                    burner_starts_per_year=700.0,
+                )
+                for boiler, rating_kg_h, existing in boilers
+            ),
+            boiler_working_bar_abs=13.5 if vessel else 10.01325,
+            vessel=vessel,
+            record_shortfall_t=0.0 if cost < 8_900_000.0 else 36.2,
+            schedule=_schedules(days, tuple(rating / 1000.0 for _, rating, _ in boilers), vessel),
+            solve_seconds=12.3,
+        )
     )
 
 

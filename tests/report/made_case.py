@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from evenfire.case.case import BoilerOffer, Case, PlanRequest, VesselOffer
+from evenfire.case.case import BoilerOffer, Case, PlanRequest, ReplayRequest, VesselOffer
 from evenfire.demand.read import RecordFormat
 from evenfire.errors import Notice
 from evenfire.money.terms import Finance, Investment, Price, Prices
@@ -130,6 +130,7 @@ def made_case(name: str = "Retort hall (invented)", alternatives: tuple[str, ...
             contingency=0.1,
         ),
         fan_power_w_per_kg_s=12_600.0,
+        replay=ReplayRequest(trials=24, seed=1),
         plan=PlanRequest(
             step_s=300.0,
             time_limit_s=30.0,

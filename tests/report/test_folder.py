@@ -15,7 +15,7 @@ from evenfire.errors import OutputError
 from evenfire.report import folder as folder_room
 from evenfire.report.folder import check_output_folder, write_appraisal
 
-NAMES = ["appraisal.json", "dispatch.csv", "report.html"]
+NAMES = ["appraisal.json", "dispatch.csv", "report.html", "set_points.csv"]
 
 
 @pytest.fixture
@@ -46,7 +46,7 @@ def written(appraisal: Appraisal, tmp_path_factory: pytest.TempPathFactory) -> P
     return folder
 
 
-def test_folder_holds_three_files_and_nothing_else_remains(written: Path) -> None:
+def test_folder_holds_its_files_and_nothing_else_remains(written: Path) -> None:
     """A written folder holds the document, the table and the page; nothing else is left beside it."""
     assert names(written) == NAMES
     assert names(written.parent) == ["appraisal"]
@@ -137,7 +137,7 @@ def test_failure_while_writing_leaves_the_old_state(
     with pytest.raises((OutputError, KeyboardInterrupt), match=r"No space left.*O105|^$"):
         write_appraisal(appraisal, target, replace)
     assert names(old_folder.parent) == ["appraisal"]
-    assert [(old_folder / name).read_text() for name in NAMES] == ["old"] * 3
+    assert [(old_folder / name).read_text() for name in NAMES] == ["old"] * len(NAMES)
 
 
 @pytest.mark.usefixtures("quick_page")
@@ -157,7 +157,7 @@ def test_failure_of_the_last_rename_brings_the_old_folder_back(
     with pytest.raises((OutputError, KeyboardInterrupt), match=r"Input/output error.*O105|^$"):
         write_appraisal(appraisal, old_folder, replace=True)
     assert names(old_folder.parent) == ["appraisal"]
-    assert [(old_folder / name).read_text() for name in NAMES] == ["old"] * 3
+    assert [(old_folder / name).read_text() for name in NAMES] == ["old"] * len(NAMES)
 
 
 @pytest.mark.usefixtures("quick_page")

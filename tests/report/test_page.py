@@ -74,7 +74,7 @@ def test_ids_are_unique_and_every_reference_has_its_target(page: PageReader, pag
 def test_every_drawing_has_words_for_those_who_do_not_see_it(page_text: str) -> None:
     """Role, short title and description of each drawing exist and are wired to it."""
     found = drawings(page_text)
-    assert len(found) == 4 + 4 * 3
+    assert len(found) == 4 + 4 * 4
     for svg in found:
         assert svg.get("role") == "img"
         title, description = svg.find(f"{SVG}title"), svg.find(f"{SVG}desc")
@@ -200,7 +200,7 @@ def test_any_name_gives_a_page_that_can_be_read(name: str) -> None:
     first = dataclasses.replace(made.alternatives[0], name=name)
     text = report_page(dataclasses.replace(made, alternatives=(first,)))
     assert read_page(text.replace("\0", "")).unbalanced == []
-    assert len(drawings(text)) == 4 + 3
+    assert len(drawings(text)) == 4 + 4
 
 
 def test_page_without_any_plan_says_so(appraisal: Appraisal) -> None:

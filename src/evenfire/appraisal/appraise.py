@@ -9,10 +9,12 @@ from evenfire.appraisal.alternatives import RULES
 from evenfire.appraisal.basis import Bases, basis, case_bases
 from evenfire.appraisal.case_record import case_record
 from evenfire.appraisal.day_choice import day_notices
-from evenfire.appraisal.priced import Priced, alternative_result, priced, unplanned_result
+from evenfire.appraisal.priced import alternative_result, unplanned_result
+from evenfire.appraisal.replay_figures import replay_figures
+from evenfire.appraisal.replayed import ReplayChoice, replayed_choice
 from evenfire.appraisal.results import AlternativeResult, Appraisal
 from evenfire.appraisal.verdict import best_of, verdict_words
-from evenfire.appraisal.vessels import window_tables
+from evenfire.appraisal.vessels import WindowTable, window_tables
 from evenfire.appraisal.whole_record import whole_record_certificates, whole_record_difference
 from evenfire.case.case import Case
 from evenfire.errors import InfeasibleError, Notice, Problem
@@ -67,26 +69,16 @@ def appraise(
     bases = case_bases(case, tables)
     record, need, chosen = bases.usual.record, bases.usual.need, bases.usual.chosen
     outcomes = planned_alternatives(case, bases, watch, store)
-    prices = {
-        outcome.alternative: priced(case, basis.inputs, tables, outcome.plan)
+    choices = {
+        outcome.alternative: replayed_choice(
+            case, basis.inputs, basis.record, basis.chosen.days, tables, outcome
+        )
         for outcome in outcomes
         if outcome.plan is not None and (basis := bases.of(outcome.alternative)) is not None
     }
-    reference = prices.get(case.plan.reference)
-    if reference is None:
+    if case.plan.reference not in choices:
         raise _no_reference(case, outcomes)
-    results = tuple(
-        _result(case, bases, outcome, prices.get(outcome.alternative), reference) for outcome in outcomes
-    )
-    results = tuple(
-        replace(
-            result,
-            typical_days_difference=whole_record_difference(basis.inputs, basis.record, outcome.plan),
-        )
-        if outcome.plan is not None and (basis := bases.of(outcome.alternative)) is not None
-        else result
-        for result, outcome in zip(results, outcomes, strict=True)
-    )
+    results = tuple(_result(case, bases, tables, outcome, choices) for outcome in outcomes)
     if whole_record:
         usual = tuple(name for name in case.plan.alternatives if bases.of(name) is bases.usual)
         certificates = whole_record_certificates(
@@ -175,14 +167,27 @@ def _not_begun(name: str, stop: Stop) -> PlanOutcome:
 def _result(
     case: Case,
     bases: Bases,
+    tables: tuple[WindowTable, ...],
     outcome: PlanOutcome,
-    price: Priced | None,
-    reference: Priced,
+    choices: dict[str, ReplayChoice],
 ) -> AlternativeResult:
-    basis = bases.of(outcome.alternative)
-    if price is None or basis is None:
-        return unplanned_result(outcome, reference)
-    return alternative_result(case, basis.inputs, outcome, price, reference, basis.record, basis.chosen.days)
+    """The recommended plant of an alternative: its plan, and beside it what its replay did."""
+    reference = choices[case.plan.reference]
+    planned_reference = reference.tried[0].planned
+    basis, choice = bases.of(outcome.alternative), choices.get(outcome.alternative)
+    if basis is None or choice is None or outcome.plan is None:
+        return unplanned_result(outcome, planned_reference)
+    planned = choice.chosen.planned
+    result = alternative_result(
+        case, basis.inputs, outcome, planned, planned_reference, basis.record, basis.chosen.days
+    )
+    return replace(
+        result,
+        replayed=replay_figures(
+            case, basis.record, choice, reference, planned, planned_reference, outcome.plan.volume_m3
+        ),
+        typical_days_difference=whole_record_difference(basis.inputs, basis.record, choice.chosen.plan),
+    )
 
 
 def _no_reference(case: Case, outcomes: tuple[PlanOutcome, ...]) -> InfeasibleError:

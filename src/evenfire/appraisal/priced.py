@@ -52,9 +52,15 @@ class Priced:
     cash: CashFlow
 
 
-def priced(case: Case, inputs: PlanInputs, tables: tuple[WindowTable, ...], plan: Plan) -> Priced:
-    """Quantities and cash flow of a plan."""
-    flows = yearly_flows(inputs, plan)
+def priced(
+    case: Case,
+    inputs: PlanInputs,
+    tables: tuple[WindowTable, ...],
+    plan: Plan,
+    flows: YearlyFlows | None = None,
+) -> Priced:
+    """Quantities and cash flow of a plan, or of its plant with the flows of a replay."""
+    flows = yearly_flows(inputs, plan) if flows is None else flows
     offers = tuple(next(offer for offer in case.boilers if offer.spec.name == name) for name in plan.boilers)
     investments = [offer.investment for offer in offers if offer.investment is not None]
     performance, window = None, None
@@ -95,7 +101,7 @@ def _quantities(
     )
 
 
-def _stated_mwh(case: Case, fuel_mwh_lhv: float) -> float:
+def stated_mwh(case: Case, fuel_mwh_lhv: float) -> float:
     """Fuel energy on the case's own basis [MWh]."""
     return fuel_mwh_lhv / case.fuel.lhv_to_hhv if case.fuel_price_basis == "hhv" else fuel_mwh_lhv
 
@@ -107,10 +113,11 @@ def blowdown_share(case: Case) -> float:
     return 1.0 - steam_alone / steam_heat_j_kg(site.boiler_today_pa, site.feedwater_k, blowdown)
 
 
-def _fuel_parts(case: Case, flows: YearlyFlows) -> tuple[FuelPart, ...]:
+def fuel_by_purpose(case: Case, flows: YearlyFlows) -> tuple[FuelPart, ...]:
+    """What a year's fuel is burnt for, on the case's basis."""
     parts = fuel_parts(flows, blowdown_share(case))
     return tuple(
-        FuelPart(name=name, mwh_per_year=float(_stated_mwh(case, mwh)))
+        FuelPart(name=name, mwh_per_year=float(stated_mwh(case, mwh)))
         for name, mwh in (
             ("steam used", parts.steam),
             ("blowdown", parts.blowdown),
@@ -136,11 +143,11 @@ def alternative_result(
     """Everything the report shows of one planned alternative."""
     cash, flows = price.cash, price.flows
     cost = cash.present_cost
-    fuel = _stated_mwh(case, flows.fuel_mwh)
-    fuel_reference = _stated_mwh(case, reference.flows.fuel_mwh)
+    fuel = stated_mwh(case, flows.fuel_mwh)
+    fuel_reference = stated_mwh(case, reference.flows.fuel_mwh)
     supplied_t = flows.demand_t - flows.unmet_t
-    back = payback(reference.cash, cash)
     bound = None if outcome.bound_k is None else outcome.bound_k * K
+    optimum = cost if outcome.cost_k is None else outcome.cost_k * K
     firm_kg_s = sum(offer.spec.rated_kg_s for offer in price.offers)
     vessel = price.performance
     return AlternativeResult(
@@ -152,18 +159,11 @@ def alternative_result(
         solver_status=outcome.stop.value,
         net_present_cost=cost,
         bound=bound,
-        gap=None if bound is None else max(0.0, (cost - bound) / cost),
+        gap=None if bound is None else max(0.0, (optimum - bound) / optimum),
         investment=cash.investment,
-        cost_lines=tuple(
-            CostLine(
-                name=name,
-                per_year=_first_year(case, cash, name),
-                present_cost=cash.line_present_cost(name),
-            )
-            for name in cash.lines
-        ),
+        cost_lines=cost_lines(case, cash),
         fuel_mwh_per_year=fuel,
-        fuel_parts=_fuel_parts(case, flows),
+        fuel_parts=fuel_by_purpose(case, flows),
         co2_t_per_year=price.quantities.co2_kg / KG_PER_TONNE,
         steam_t_per_year=supplied_t,
         burner_starts_per_year=sum(boiler.burner_starts for boiler in flows.boilers),
@@ -174,14 +174,8 @@ def alternative_result(
         fuel_saved_percent=100.0 * (fuel_reference - fuel) / fuel_reference if fuel_reference else 0.0,
         co2_saved_t_per_year=(reference.quantities.co2_kg - price.quantities.co2_kg) / KG_PER_TONNE,
         net_present_saving=reference.cash.present_cost - cost,
-        payback=Payback(
-            simple_years=back.simple_years, discounted_years=back.discounted_years, note=back.note
-        ),
-        steam_cost_per_t=cost
-        * capital_recovery_factor(case.finance.discount_rate, case.finance.horizon_years)
-        / supplied_t
-        if supplied_t > 0
-        else None,
+        payback=payback_of(reference, price),
+        steam_cost_per_t=steam_cost_per_t(case, cash, flows),
         boilers=tuple(
             BoilerUse(
                 name=boiler.name,
@@ -208,6 +202,29 @@ def alternative_result(
         ),
         solve_seconds=outcome.seconds,
     )
+
+
+def cost_lines(case: Case, cash: CashFlow) -> tuple[CostLine, ...]:
+    """The lines of a net present cost."""
+    return tuple(
+        CostLine(name=name, per_year=_first_year(case, cash, name), present_cost=cash.line_present_cost(name))
+        for name in cash.lines
+    )
+
+
+def steam_cost_per_t(case: Case, cash: CashFlow, flows: YearlyFlows) -> float | None:
+    """Annuity of the net present cost over the steam supplied in a year [currency/t]."""
+    supplied_t = flows.demand_t - flows.unmet_t
+    if supplied_t <= 0.0:
+        return None
+    annuity = capital_recovery_factor(case.finance.discount_rate, case.finance.horizon_years)
+    return float(cash.present_cost * annuity / supplied_t)
+
+
+def payback_of(reference: Priced, price: Priced) -> Payback:
+    """Payback of what is priced against the reference."""
+    back = payback(reference.cash, price.cash)
+    return Payback(simple_years=back.simple_years, discounted_years=back.discounted_years, note=back.note)
 
 
 def _first_year(case: Case, cash: CashFlow, name: str) -> float:

@@ -101,6 +101,121 @@ class WholeRecord:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class Payback:
+    """Payback against the reference: a number, or an honest word."""
+
+    simple_years: float | None
+    discounted_years: float | None
+    note: str
+    """Empty where both numbers stand; else why one does not, e.g. ``saves from the first day``."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class SetPoint:
+    """One line of the sheet a controls contractor needs."""
+
+    name: str
+    value: str
+    unit: str
+    purpose: str
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class ReplayEvent:
+    """A stretch in which the process got less steam than it asked for."""
+
+    start: str
+    """Local time, ISO 8601."""
+    minutes: float
+    unmet_kg: float
+    lowest_process_bar_abs: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class ReplayedSize:
+    """One of the near-optimal plants that were run."""
+
+    boilers: tuple[str, ...]
+    vessel_volume_m3: float
+    charged_bar_abs: float | None
+    discharged_bar_abs: float | None
+    planned_cost: float
+    """Net present cost with foresight [currency]."""
+    replayed_cost: float
+    unmet_steam_t_per_year: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class ReplayTrace:
+    """Some days of the replay, one value per step of the record."""
+
+    start: str
+    step_s: float
+    demand_t_h: FloatArray = field(repr=False)
+    supplied_t_h: FloatArray = field(repr=False)
+    output_t_h: FloatArray = field(repr=False)
+    """Shape (boilers, steps)."""
+    vessel_bar_abs: FloatArray = field(repr=False)
+    """NaN without a vessel."""
+    boiler_bar_abs: FloatArray = field(repr=False)
+    process_bar_abs: FloatArray = field(repr=False)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Replayed:
+    """What the recommended plant of an alternative did over the whole record without foresight."""
+
+    net_present_cost: float
+    net_present_saving: float
+    """Against the replayed reference [currency]."""
+    cost_lines: tuple[CostLine, ...]
+    fuel_parts: tuple[FuelPart, ...]
+    """By purpose, adding up to ``fuel_mwh_per_year``."""
+    fuel_mwh_per_year: float
+    fuel_saved_mwh_per_year: float
+    fuel_saved_percent: float
+    co2_t_per_year: float
+    co2_saved_t_per_year: float
+    steam_t_per_year: float
+    """Supplied to the process."""
+    steam_cost_per_t: float | None
+    """Annuity of the net present cost over yearly steam supplied [currency/t]."""
+    burner_starts_per_year: float
+    firing_hours_per_year: float
+    unmet_steam_t_per_year: float
+    vented_steam_t_per_year: float
+    payback: Payback
+    passes: bool
+    """Unmet steam within what the plan leaves unmet and the case's tolerance."""
+    lowest_process_bar_abs: float
+    lowest_boiler_bar_abs: float
+    boiler_low_hours_per_year: float
+    """Boiler pressure so low that carry-over of water must be feared."""
+    release_limited_hours_per_year: float
+    vessel_empty_hours_per_year: float
+    mass_closure_relative: float
+    energy_closure_relative: float
+    planned_saving: float
+    """The plan's net present saving against the planned reference [currency]."""
+    realised_share: float | None
+    """Replayed over planned saving [1]; None for the reference and where the plan saves nothing."""
+    margin_percent: float | None
+    """How much larger the recommended vessel is than the optimum with foresight; None without a vessel."""
+    band_cost: float
+    """Net present cost of the same plant on a tuned pressure band, as plants have it today [currency]."""
+    trials: int
+    learnt_cost_per_t: float
+    """Operating cost per tonne of demand over the horizon, on the weeks the settings were learnt on."""
+    judged_cost_per_t: float
+    """The same on the weeks they were not."""
+    set_points: tuple[SetPoint, ...]
+    sizes: tuple[ReplayedSize, ...]
+    events: tuple[ReplayEvent, ...]
+    worst: ReplayTrace = field(repr=False)
+    """A week around the worst event, or around the highest demand."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class DaySchedule:
     """Planned dispatch of one typical day."""
 
@@ -121,16 +236,6 @@ class DaySchedule:
     """Vessel pressure at the start of each step; empty without a vessel."""
     unmet_t_h: FloatArray = field(repr=False)
     vented_t_h: FloatArray = field(repr=False)
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Payback:
-    """Payback against the reference: a number, or an honest word."""
-
-    simple_years: float | None
-    discounted_years: float | None
-    note: str
-    """Empty where both numbers stand; else why one does not, e.g. ``saves from the first day``."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -175,9 +280,26 @@ class AlternativeResult:
     schedule: tuple[DaySchedule, ...] = field(repr=False)
     typical_days_difference: float | None = None
     """Operating cost of this plant on typical days over that on every day of the record, less one [1]."""
+    replayed: Replayed | None = None
+    """None only without a plan."""
     whole_record: WholeRecord | None = None
     """Set where the certificate for the whole record was asked for."""
     solve_seconds: float = field(compare=False)
+
+    @property
+    def headline_cost(self) -> float | None:
+        """Net present cost as replayed; as planned where nothing was replayed [currency]."""
+        return self.net_present_cost if self.replayed is None else self.replayed.net_present_cost
+
+    @property
+    def headline_cost_lines(self) -> tuple[CostLine, ...]:
+        """Lines of ``headline_cost``."""
+        return self.cost_lines if self.replayed is None else self.replayed.cost_lines
+
+    @property
+    def headline_fuel_parts(self) -> tuple[FuelPart, ...]:
+        """Fuel by purpose as replayed; as planned where nothing was replayed."""
+        return self.fuel_parts if self.replayed is None else self.replayed.fuel_parts
 
     @property
     def planned(self) -> bool:

@@ -9,9 +9,17 @@ from evenfire.units import J_PER_MWH, bar_abs_to_pa, pa_to_bar_g
 
 
 def best_of(results: tuple[AlternativeResult, ...]) -> AlternativeResult:
-    """The planned alternative with the least net present cost; of equal ones the first."""
-    planned = [result for result in results if result.net_present_cost is not None]
-    return min(planned, key=lambda result: result.net_present_cost or 0.0)
+    """The alternative with the least replayed net present cost of those that pass; of equal ones the first.
+
+    Where none passes its replay, the cheapest of all that are planned.
+    """
+    planned = [result for result in results if result.headline_cost is not None]
+    return min(planned, key=lambda result: (not passes(result), result.headline_cost or 0.0))
+
+
+def passes(result: AlternativeResult) -> bool:
+    """Whether an alternative's replay supplies what its plan promises."""
+    return result.replayed is None or result.replayed.passes
 
 
 def plant_words(result: AlternativeResult) -> str:
@@ -45,10 +53,12 @@ def fuel_price_range(
     low, high = 0.0, float("inf")
     own = _fuel_cost(best)
     for other in results:
-        if other is best or other.net_present_cost is None or best.net_present_cost is None:
+        if other is best or other.headline_cost is None or best.headline_cost is None:
             continue
         slope = (_fuel_cost(other) - own) / price
-        lead = other.net_present_cost - best.net_present_cost
+        lead = other.headline_cost - best.headline_cost
+        if lead < 0.0:
+            continue
         if slope > 0:
             low = max(low, price - lead / slope)
         elif slope < 0:
@@ -57,13 +67,14 @@ def fuel_price_range(
 
 
 def _fuel_cost(result: AlternativeResult) -> float:
-    return sum(line.present_cost for line in result.cost_lines if line.name == "fuel")
+    """Present cost of the fuel that the headline rests on [currency]."""
+    return sum(line.present_cost for line in result.headline_cost_lines if line.name == "fuel")
 
 
 def verdict_words(case: Case, results: tuple[AlternativeResult, ...], best: AlternativeResult) -> str:
     """The verdict in two sentences."""
     currency = case.finance.currency
-    cost = best.net_present_cost or 0.0
+    cost = best.headline_cost or 0.0
     twins = [x.name for x in results if x is not best and _same_plant(x, best)]
     same = f" (the same plant as “{twins[0]}”)" if twins else ""
     first = (
@@ -74,17 +85,24 @@ def verdict_words(case: Case, results: tuple[AlternativeResult, ...], best: Alte
     if reference is best:
         first += "; no planned change earns its cost."
     else:
-        saving = best.net_present_saving or 0.0
+        saving = (reference.headline_cost or 0.0) - cost
         first += f", {saving / 1000:,.0f} thousand less than “{reference.name}”."
     others = tuple(x for x in results if x.name not in twins)
     price_words = _range_words(case, *fuel_price_range(case, others, best))
     rival = _nearest_rival(results, best, twins)
-    if rival is None or rival.net_present_cost is None:
+    if not passes(best):
+        first += (
+            " In its replay it leaves more steam unmet than is tolerated: do not rely on it as it stands."
+        )
+    if rival is None or rival.headline_cost is None:
         return first
-    second = f"Next is “{rival.name}”, {(rival.net_present_cost - cost) / 1000:,.0f} thousand dearer"
-    if rival.bound is not None and rival.bound < cost:
+    lead = rival.headline_cost - cost
+    second = f"Next is “{rival.name}”, {lead / 1000:,.0f} thousand dearer"
+    if not passes(rival):
+        second = f"Next is “{rival.name}”, which its replay refuses"
+    if rival.replayed is None and rival.bound is not None and rival.bound < cost:
         second += ", though the proven bounds do not exclude that it is cheaper"
-    return f"{first} {second}; {price_words}, with every plant as planned here."
+    return f"{first} {second}; {price_words}, with every plant as it stands here."
 
 
 def _range_words(case: Case, low: float, high: float) -> str:
@@ -111,5 +129,5 @@ def _same_plant(first: AlternativeResult, second: AlternativeResult) -> bool:
 def _nearest_rival(
     results: tuple[AlternativeResult, ...], best: AlternativeResult, twins: list[str]
 ) -> AlternativeResult | None:
-    rivals = [x for x in results if x is not best and x.name not in twins and x.net_present_cost is not None]
-    return min(rivals, key=lambda x: x.net_present_cost or 0.0) if rivals else None
+    rivals = [x for x in results if x is not best and x.name not in twins and x.headline_cost is not None]
+    return min(rivals, key=lambda x: (not passes(x), x.headline_cost or 0.0)) if rivals else None

@@ -92,6 +92,15 @@ class PlanRequest:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class ReplayRequest:
+    """How plans are tried on the whole record."""
+
+    trials: int
+    """Runs over half the record to tune the controls of one plant."""
+    seed: int
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class Case:
     """One site and one question."""
 
@@ -113,6 +122,7 @@ class Case:
     fan_power_w_per_kg_s: float
     """Electric power of fan and feed pump per steam flow [W s/kg]."""
     plan: PlanRequest
+    replay: ReplayRequest
     notices: tuple[Notice, ...]
     """Every number that the program assumed because the case did not state it."""
     fuel_price_basis: str

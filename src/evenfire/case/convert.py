@@ -9,7 +9,7 @@ from pathlib import Path
 from evenfire.boiler import fuel_spec
 from evenfire.case.assumptions import assumption, default_notices
 from evenfire.case.boilers import boiler_offers
-from evenfire.case.case import Case, PlanRequest, VesselOffer
+from evenfire.case.case import Case, PlanRequest, ReplayRequest, VesselOffer
 from evenfire.case.checks import SHIFTABLE, possible_alternatives, starts_shift
 from evenfire.case.draft import boiler_place
 from evenfire.case.fuel_basis import lhv_to_hhv
@@ -64,6 +64,7 @@ def case_in_si(
         finance=_finance(written.money),
         fan_power_w_per_kg_s=written.money.fan_and_pump_kwh_per_t_steam * J_PER_KWH / KG_PER_TONNE,
         plan=_plan(written),
+        replay=ReplayRequest(trials=written.replay.trials, seed=written.replay.seed),
         notices=(*record_notices, *_notices(written), *boiler_notices),
         fuel_price_basis=written.fuel.calorific_basis,
         input_hashes=input_hashes,

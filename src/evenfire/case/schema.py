@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Annotated, Any
 
 from evenfire.case.schema_boiler import ExistingBoiler, NewBoiler
-from evenfire.case.schema_money import Money, Plan
+from evenfire.case.schema_money import Money, Plan, Replay
 from evenfire.case.schema_record import Record
 from evenfire.case.schema_schedule import Schedule
 from evenfire.case.schema_section import Section, entry
@@ -35,6 +35,7 @@ class CaseFile(Section):
     ] = None
     money: Annotated[Money, entry("Finance, and the prices that are not fuel.")]
     plan: Annotated[Plan, entry("How the alternatives are planned.")] = Plan()
+    replay: Annotated[Replay, entry("How plans are tried on the whole record.")] = Replay()
 
 
 def case_json_schema() -> dict[str, Any]:

@@ -144,3 +144,20 @@ class Plan(Section):
         float,
         quantity("t/a", "Unmet steam per year that is put up with.", at_least=0.0, at_most=1.0e6),
     ] = 0.0
+
+
+class Replay(Section):
+    """How plans are tried on the whole record by controls that cannot see the future."""
+
+    trials: Annotated[
+        int,
+        quantity(
+            "1",
+            "Runs over half of the record to tune the settings of one plant's controls.",
+            at_least=24,
+            at_most=10_000,
+        ),
+    ] = 96
+    seed: Annotated[
+        int, quantity("1", "Seed of the tuning's random numbers.", at_least=0, at_most=2**31 - 1)
+    ] = 1

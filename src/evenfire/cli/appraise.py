@@ -11,6 +11,7 @@ from rich.table import Table
 
 from evenfire.appraisal.appraise import appraise
 from evenfire.appraisal.results import AlternativeResult, Appraisal, Standing
+from evenfire.case.case import Case
 from evenfire.case.load import load_case
 from evenfire.errors import ExitStatus
 from evenfire.plan.outcome import Progress
@@ -32,6 +33,15 @@ def run(
     case = load_case(case_path)
     folder = out if out is not None else case.folder / "appraisal"
     check_output_folder(folder, replace)
+    result = appraised(console, case, fresh=fresh, whole_record=whole_record)
+    write_appraisal(result, folder, replace)
+    print_appraisal(console, result)
+    console.print(f"Written: {folder / 'report.html'}", soft_wrap=True)
+    return status_of(result)
+
+
+def appraised(console: Console, case: Case, *, fresh: bool, whole_record: bool) -> Appraisal:
+    """The appraisal of a case, with progress on the terminal."""
     console.print(f"{case.name}: {len(case.plan.alternatives)} alternatives")
     with Bar(
         SpinnerColumn(),
@@ -46,10 +56,15 @@ def run(
             bar.update(task, description=_progress_words(progress))
 
         store = None if fresh else PlanStore(default_folder())
-        result = appraise(case, watch, store, whole_record)
-    write_appraisal(result, folder, replace)
+        return appraise(case, watch, store, whole_record)
+
+
+def print_appraisal(console: Console, result: Appraisal) -> None:
+    """Table, verdict, warnings and cautions."""
     console.print(_table(result))
     console.print(result.verdict, soft_wrap=True)
+    if any(x.replayed is not None and not x.replayed.passes for x in result.alternatives):
+        console.print("! leaves more steam unmet in its replay than its plan and the case's tolerance allow")
     for notice in result.notices:
         if notice.severity == "warning":
             console.print(f"Note: {notice.text}", soft_wrap=True)
@@ -58,16 +73,16 @@ def run(
         "construction.",
         soft_wrap=True,
     )
-    console.print(f"Written: {folder / 'report.html'}", soft_wrap=True)
-    return _status(result)
 
 
-def _status(result: Appraisal) -> ExitStatus:
+def status_of(result: Appraisal) -> ExitStatus:
+    """How far the plans are proven, and whether the best one works when it is run."""
     if any(x.solver_status == "interrupted" for x in result.alternatives):
         return ExitStatus.INTERRUPTED
     if any(x.standing in (Standing.GAP_NOT_REACHED, Standing.NO_PLAN) for x in result.alternatives):
         return ExitStatus.GAP_MISSED
-    return ExitStatus.DONE
+    best = result.alternative(result.best).replayed
+    return ExitStatus.REPLAY_REFUSED if best is not None and not best.passes else ExitStatus.DONE
 
 
 def _progress_words(progress: Progress) -> str:
@@ -87,12 +102,14 @@ def _table(result: Appraisal) -> Table:
         "boilers, t/h",
         "vessel, m³",
         f"net present cost, 1000 {currency}",
+        "  the plan's, with foresight",
         f"investment, 1000 {currency}",
         "fuel saved, MWh/a",
         "burner starts per year",
         "unmet steam, t/a",
         "simple payback, years",
-        "proven gap, %",
+        "saving realised, % of planned",
+        "proven gap of the plan, %",
     )
     table = Table(show_lines=False, pad_edge=False)
     table.add_column("", no_wrap=True)
@@ -105,17 +122,20 @@ def _table(result: Appraisal) -> Table:
 
 
 def _column(alternative: AlternativeResult) -> list[str]:
-    if alternative.net_present_cost is None:
-        return [alternative.standing.value, *[""] * 8]
-    payback = alternative.payback
+    run = alternative.replayed
+    if alternative.net_present_cost is None or run is None:
+        return [alternative.standing.value, *[""] * 10]
+    payback = run.payback
     return [
-        " + ".join(f"{boiler.rating_kg_h / 1000:g}" for boiler in alternative.boilers),
+        " + ".join(f"{boiler.rating_kg_h / 1000:.3g}" for boiler in alternative.boilers),
         f"{alternative.vessel.volume_m3:.1f}" if alternative.vessel else "none",
+        f"{run.net_present_cost / 1000:,.0f}{'' if run.passes else ' !'}",
         f"{alternative.net_present_cost / 1000:,.0f}",
         f"{alternative.investment / 1000:,.0f}",
-        f"{alternative.fuel_saved_mwh_per_year:,.0f}",
-        f"{alternative.burner_starts_per_year:,.0f}",
-        f"{alternative.unmet_steam_t_per_year:,.1f}",
+        f"{run.fuel_saved_mwh_per_year:,.0f}",
+        f"{run.burner_starts_per_year:,.0f}",
+        f"{run.unmet_steam_t_per_year:,.1f}",
         payback.note if payback.simple_years is None else f"{payback.simple_years:.1f}",
+        "–" if run.realised_share is None else f"{100 * run.realised_share:.0f}",
         "unknown" if alternative.gap is None else f"{100 * alternative.gap:.2f}",
     ]

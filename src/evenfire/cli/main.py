@@ -59,6 +59,27 @@ def appraise(
 
 
 @app.command()
+def replay(
+    case: CaseArgument,
+    out: Annotated[
+        Path | None, typer.Option(metavar="FOLDER", help="Output folder; CASE/replay unless given.")
+    ] = None,
+    replace: Annotated[bool, typer.Option("--replace", help="Overwrite an existing output folder.")] = False,
+    quiet: Annotated[bool, typer.Option("--quiet", help="Print only problems.")] = False,
+) -> None:
+    """Run every recommended plant over the whole record by controls that cannot see the future.
+
+    Plans are taken from earlier runs where they are unchanged. Writes replay.json, set_points.csv and
+    trace.csv.
+
+    Example: evenfire replay cases/cannery --out cannery-replay
+    """
+    from evenfire.cli.replay import run
+
+    raise typer.Exit(run(case, out, replace=replace, quiet=quiet))
+
+
+@app.command()
 def model(
     case: CaseArgument,
     alternative: Annotated[str, typer.Option(help="Name of the alternative, e.g. 'storage'.")],

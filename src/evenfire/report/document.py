@@ -11,6 +11,8 @@ from evenfire.appraisal.results import (
     Appraisal,
     BoilerUse,
     CostLine,
+    Payback,
+    Replayed,
     VesselChoice,
     WholeRecord,
 )
@@ -21,6 +23,7 @@ from evenfire.demand.statistics import demand_statistics
 from evenfire.errors import Notice
 from evenfire.report.cautions import CAUTIONS
 from evenfire.report.notices import all_notices
+from evenfire.report.replay_document import replay_entry
 from evenfire.report.trade_units import (
     SECONDS_PER_MINUTE,
     boiler_quantities,
@@ -102,21 +105,72 @@ def _alternative(result: AlternativeResult) -> dict[str, Any]:
         "boiler_working_pressure_bar_abs": result.boiler_working_bar_abs,
         "vessel_volume_m3": vessel.volume_m3 if vessel is not None else 0.0,
     }
+    document |= {"replay": None, "planned": None}
+    if result.replayed is not None:
+        document |= _replayed_headline(result, result.replayed) | {"planned": _planned(result)}
     if not result.planned:
         known = ("name", "standing", "note", "solver_status", "bound")
         document = {key: value if key in known else None for key, value in document.items()}
     return document | {
         "charged_pressure_bar_abs": vessel.charged_bar_abs if vessel is not None else None,
         "discharged_pressure_bar_abs": vessel.discharged_bar_abs if vessel is not None else None,
-        "payback_years": result.payback.simple_years,
-        "discounted_payback_years": result.payback.discounted_years,
-        "payback_note": result.payback.note,
+        **_payback(result.payback if result.replayed is None else result.replayed.payback),
         "boilers": [_boiler(each) for each in result.boilers],
         "vessel": _vessel(vessel) if vessel is not None else None,
         "typical_days_difference_percent": (
             None if result.typical_days_difference is None else 100.0 * result.typical_days_difference
         ),
         "whole_record": None if result.whole_record is None else _whole_record(result.whole_record),
+        "cost_lines": [_cost_line(each) for each in result.headline_cost_lines],
+        "fuel_parts_mwh_per_year": {part.name: part.mwh_per_year for part in result.headline_fuel_parts},
+    }
+
+
+def _payback(payback: Payback) -> dict[str, Any]:
+    return {
+        "payback_years": payback.simple_years,
+        "discounted_payback_years": payback.discounted_years,
+        "payback_note": payback.note,
+    }
+
+
+def _replayed_headline(result: AlternativeResult, run: Replayed) -> dict[str, Any]:
+    """Figures of the replay, which stand in the place of the plan's."""
+    return {
+        "net_present_cost": run.net_present_cost,
+        "net_present_saving": run.net_present_saving,
+        "fuel_mwh_per_year": run.fuel_mwh_per_year,
+        "fuel_saved_mwh_per_year": run.fuel_saved_mwh_per_year,
+        "fuel_saved_percent": run.fuel_saved_percent,
+        "co2_t_per_year": run.co2_t_per_year,
+        "co2_saved_t_per_year": run.co2_saved_t_per_year,
+        "steam_t_per_year": run.steam_t_per_year,
+        "steam_cost_per_t": run.steam_cost_per_t,
+        "burner_starts_per_year": run.burner_starts_per_year,
+        "firing_hours_per_year": run.firing_hours_per_year,
+        "unmet_steam_t_per_year": run.unmet_steam_t_per_year,
+        "vented_steam_t_per_year": run.vented_steam_t_per_year,
+        "replay": replay_entry(result, run),
+    }
+
+
+def _planned(result: AlternativeResult) -> dict[str, Any]:
+    """The plan of the same plant: what foresight would reach."""
+    return {
+        "net_present_cost": result.net_present_cost,
+        "net_present_saving": result.net_present_saving,
+        "steam_cost_per_t": result.steam_cost_per_t,
+        "fuel_mwh_per_year": result.fuel_mwh_per_year,
+        "fuel_saved_mwh_per_year": result.fuel_saved_mwh_per_year,
+        "fuel_saved_percent": result.fuel_saved_percent,
+        "co2_t_per_year": result.co2_t_per_year,
+        "co2_saved_t_per_year": result.co2_saved_t_per_year,
+        "steam_t_per_year": result.steam_t_per_year,
+        "burner_starts_per_year": result.burner_starts_per_year,
+        "firing_hours_per_year": result.firing_hours_per_year,
+        "unmet_steam_t_per_year": result.unmet_steam_t_per_year,
+        "vented_steam_t_per_year": result.vented_steam_t_per_year,
+        **_payback(result.payback),
         "cost_lines": [_cost_line(each) for each in result.cost_lines],
         "fuel_parts_mwh_per_year": {part.name: part.mwh_per_year for part in result.fuel_parts},
     }

@@ -17,7 +17,7 @@ UNMET_LINE = "unmet steam"
 
 def cost_line_names(alternatives: Sequence[AlternativeResult]) -> tuple[str, ...]:
     """Names of all cost lines of all alternatives, in the order in which they first appear."""
-    return tuple(dict.fromkeys(line.name for each in alternatives for line in each.cost_lines))
+    return tuple(dict.fromkeys(line.name for each in alternatives for line in each.headline_cost_lines))
 
 
 def money_drawing(appraisal: Appraisal) -> Drawing:
@@ -51,7 +51,7 @@ def money_drawing(appraisal: Appraisal) -> Drawing:
         for place, each, end in zip(places, planned, above, strict=True):
             bold = "bold" if each.name == appraisal.best else "normal"
             axes.annotate(
-                thousands(each.net_present_cost),
+                thousands(each.headline_cost),
                 (end, place),
                 xytext=(4, 0),
                 textcoords="offset points",
@@ -67,7 +67,7 @@ def money_drawing(appraisal: Appraisal) -> Drawing:
         axes.set_xlabel(f"net present cost [thousand {label(currency)}]")
         axes.legend(loc="lower left", bbox_to_anchor=(0.0, 1.0), ncols=4)
 
-    totals = "; ".join(f"{each.name} {thousands(each.net_present_cost)}" for each in planned)
+    totals = "; ".join(f"{each.name} {thousands(each.headline_cost)}" for each in planned)
     return drawing(
         "money",
         "Where the money goes",
@@ -78,4 +78,4 @@ def money_drawing(appraisal: Appraisal) -> Drawing:
 
 
 def _amount(alternative: AlternativeResult, name: str) -> float:
-    return sum(line.present_cost for line in alternative.cost_lines if line.name == name)
+    return sum(line.present_cost for line in alternative.headline_cost_lines if line.name == name)

@@ -18,6 +18,7 @@ from evenfire.report.page_plant import plant_page
 from evenfire.report.page_record import record_page
 from evenfire.report.page_sweep import sweep_page
 from evenfire.report.record_document import record_document_text
+from evenfire.report.replay_document import replay_document_text, set_point_table, trace_table
 from evenfire.report.sweep_document import sweep_document_text, sweep_table
 from evenfire.report.tables import dispatch_table
 from evenfire.sweep.results import SweepResult
@@ -25,7 +26,8 @@ from evenfire.sweep.results import SweepResult
 DOCUMENT_FILE = "appraisal.json"
 DISPATCH_FILE = "dispatch.csv"
 PAGE_FILE = "report.html"
-OUTPUT_FILES = (DOCUMENT_FILE, DISPATCH_FILE, PAGE_FILE)
+SET_POINTS_FILE = "set_points.csv"
+OUTPUT_FILES = (DOCUMENT_FILE, DISPATCH_FILE, SET_POINTS_FILE, PAGE_FILE)
 RECORD_DOCUMENT_FILE = "record.json"
 RECORD_PAGE_FILE = "record.html"
 RECORD_FILES = (RECORD_DOCUMENT_FILE, RECORD_PAGE_FILE)
@@ -33,6 +35,9 @@ PLANT_PAGE_FILE = "plant.html"
 PLANT_FILES = (PLANT_PAGE_FILE,)
 
 
+REPLAY_DOCUMENT_FILE = "replay.json"
+TRACE_FILE = "trace.csv"
+REPLAY_FILES = (REPLAY_DOCUMENT_FILE, SET_POINTS_FILE, TRACE_FILE)
 SWEEP_DOCUMENT_FILE = "sweep.json"
 SWEEP_TABLE_FILE = "sweep.csv"
 SWEEP_PAGE_FILE = "sweep.html"
@@ -73,7 +78,7 @@ def check_output_folder(folder: Path, replace: bool, own: tuple[str, ...] = OUTP
 
 
 def write_appraisal(appraisal: Appraisal, folder: Path, replace: bool) -> None:
-    """Write ``appraisal.json``, ``dispatch.csv`` and ``report.html`` into a folder.
+    """Write ``appraisal.json``, ``dispatch.csv``, ``set_points.csv`` and ``report.html`` into a folder.
 
     Everything is written into a hidden sibling first and renamed at the end, so that a failure or an
     interruption leaves either the old folder or the new one, never a half of either.
@@ -95,7 +100,33 @@ def write_appraisal(appraisal: Appraisal, folder: Path, replace: bool) -> None:
     texts = {
         DOCUMENT_FILE: document_text(appraisal),
         DISPATCH_FILE: dispatch_table(appraisal),
+        SET_POINTS_FILE: set_point_table(appraisal),
         PAGE_FILE: report_page(appraisal),
+    }
+    _write_texts(texts, folder, replace)
+
+
+def write_replay(appraisal: Appraisal, folder: Path, replace: bool) -> None:
+    """Write ``replay.json``, ``set_points.csv`` and ``trace.csv`` into a folder, as for an appraisal.
+
+    Parameters
+    ----------
+    appraisal
+        Whose replays to write.
+    folder
+        Where to; created, its parent must exist.
+    replace
+        Whether a replay's results that are already there may be replaced.
+
+    Raises
+    ------
+    OutputError
+        As for :func:`check_output_folder`.
+    """
+    texts = {
+        REPLAY_DOCUMENT_FILE: replay_document_text(appraisal),
+        SET_POINTS_FILE: set_point_table(appraisal),
+        TRACE_FILE: trace_table(appraisal),
     }
     _write_texts(texts, folder, replace)
 

@@ -35,6 +35,7 @@ from evenfire.report.page_inputs import (
     typical_days_table,
 )
 from evenfire.report.page_record import peaks_table, quality_table
+from evenfire.report.page_replay import replay_chapters, replay_table
 from evenfire.report.page_storage import storage_need_table
 from evenfire.report.page_table import Table
 from evenfire.report.tables import boiler_columns
@@ -105,6 +106,8 @@ def report_page(appraisal: Appraisal) -> str:
         storage_need=storage_need_drawing(appraisal),
         storage_need_table=storage_need_table(appraisal),
         chapters=_chapters(appraisal),
+        replay_table=replay_table(appraisal),
+        replays=replay_chapters(appraisal),
         costs=cost_tables(appraisal),
         fuel_parts=fuel_table(appraisal),
         typical_days=typical_days_table(appraisal.typical_days),
@@ -136,16 +139,21 @@ def key_numbers(appraisal: Appraisal) -> tuple[KeyNumber, ...]:
     if best is None or not best.planned:
         return ()
     money = f"thousand {appraisal.case.finance.currency}"
+    run = best.replayed
     return (
-        KeyNumber(words="net present cost", value=thousands(best.net_present_cost), unit=money),
+        KeyNumber(words="net present cost", value=thousands(best.headline_cost), unit=money),
         KeyNumber(
             words=f"saved against “{appraisal.reference}”",
-            value=thousands(best.net_present_saving),
+            value=thousands(best.net_present_saving if run is None else run.net_present_saving),
             unit=money,
         ),
         KeyNumber(words="investment", value=thousands(best.investment), unit=money),
-        KeyNumber(words="simple payback", value=payback_words(best.payback), unit=""),
-        KeyNumber(words="proven gap", value=gap_words(best.gap), unit=""),
+        KeyNumber(
+            words="simple payback",
+            value=payback_words(best.payback if run is None else run.payback),
+            unit="",
+        ),
+        KeyNumber(words="proven gap of the plan", value=gap_words(best.gap), unit=""),
     )
 
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from evenfire.appraisal.results import AlternativeResult, Appraisal, Payback, Standing, VesselChoice
+from evenfire.appraisal.results import AlternativeResult, Appraisal, Payback, Replayed, Standing, VesselChoice
 from evenfire.report.figures_money import cost_line_names
 from evenfire.report.formats import MISSING, digits, gap_words, number, percent, sentence, thousands, years
 from evenfire.report.page_table import Group, Table, plain_table
@@ -36,7 +36,10 @@ def overview_table(appraisal: Appraisal) -> Table:
     basis = BASIS_WORD[appraisal.fuel_basis]
     against = f"against “{appraisal.reference}”"
     return Table(
-        caption=f"Alternatives. Money at prices of {finance.price_date}, over {finance.horizon_years} years.",
+        caption=(
+            f"Alternatives as replayed over the whole record. Money at prices of {finance.price_date}, over "
+            f"{finance.horizon_years} years."
+        ),
         head=("", *(each.name for each in appraisal.alternatives)),
         groups=(
             Group(rows=(_row("Result", appraisal, _standing, always=True),)),
@@ -54,20 +57,23 @@ def overview_table(appraisal: Appraisal) -> Table:
                     _row(
                         f"Net present cost [{money}]",
                         appraisal,
-                        lambda each: thousands(each.net_present_cost),
+                        lambda each: thousands(each.headline_cost),
                     ),
                     _row(
                         f"Saved {against} [{money}]",
                         appraisal,
-                        lambda each: thousands(each.net_present_saving),
+                        lambda each: _run(each, lambda run: thousands(run.net_present_saving)),
                     ),
                     _row(f"Investment [{money}]", appraisal, lambda each: thousands(each.investment)),
-                    _row("Payback, simple", appraisal, lambda each: payback_words(each.payback)),
-                    _row("Payback, discounted", appraisal, lambda each: discounted_words(each.payback)),
                     _row(
-                        f"Cost of steam [{finance.currency}/t]",
+                        "Payback, simple",
                         appraisal,
-                        lambda each: number(each.steam_cost_per_t, 2),
+                        lambda each: _run(each, lambda run: payback_words(run.payback)),
+                    ),
+                    _row(
+                        "Payback, discounted",
+                        appraisal,
+                        lambda each: _run(each, lambda run: discounted_words(run.payback)),
                     ),
                 ),
             ),
@@ -75,16 +81,53 @@ def overview_table(appraisal: Appraisal) -> Table:
                 title="A year of operation",
                 rows=(
                     _row(
-                        f"Fuel [MWh/a,\u00a0{basis}]", appraisal, lambda each: number(each.fuel_mwh_per_year)
+                        f"Fuel [MWh/a,\u00a0{basis}]",
+                        appraisal,
+                        lambda each: _run(each, lambda run: number(run.fuel_mwh_per_year)),
+                    ),
+                    _row(
+                        f"Fuel saved [MWh/a,\u00a0{basis}]",
+                        appraisal,
+                        lambda each: _run(each, lambda run: number(run.fuel_saved_mwh_per_year)),
+                    ),
+                    _row(
+                        "Burner starts [1/a]",
+                        appraisal,
+                        lambda each: _run(each, lambda run: number(run.burner_starts_per_year)),
+                    ),
+                    _row(
+                        "Unmet steam [t/a]",
+                        appraisal,
+                        lambda each: _run(each, lambda run: number(run.unmet_steam_t_per_year, 1)),
+                    ),
+                    _row(
+                        "Peaks of the record not covered [t]",
+                        appraisal,
+                        lambda each: number(each.record_shortfall_t, 1),
+                    ),
+                ),
+            ),
+            Group(
+                title="As planned, with foresight",
+                rows=(
+                    _row(
+                        f"Net present cost [{money}]",
+                        appraisal,
+                        lambda each: thousands(each.net_present_cost),
+                    ),
+                    _row(
+                        f"Saved {against} [{money}]",
+                        appraisal,
+                        lambda each: thousands(each.net_present_saving),
                     ),
                     _row(f"Fuel saved [MWh/a,\u00a0{basis}]", appraisal, _fuel_saved),
                     _row("CO2 saved [t/a]", appraisal, lambda each: number(each.co2_saved_t_per_year)),
                     _row("Burner starts [1/a]", appraisal, lambda each: number(each.burner_starts_per_year)),
                     _row("Unmet steam [t/a]", appraisal, lambda each: number(each.unmet_steam_t_per_year, 1)),
                     _row(
-                        "Peaks of the record not covered [t]",
+                        f"Cost of steam [{finance.currency}/t]",
                         appraisal,
-                        lambda each: number(each.record_shortfall_t, 1),
+                        lambda each: number(each.steam_cost_per_t, 2),
                     ),
                 ),
             ),
@@ -125,17 +168,17 @@ def gap_table(appraisal: Appraisal) -> Table:
 
 
 def cost_tables(appraisal: Appraisal) -> tuple[Table, Table]:
-    """Every cost line of every plan: present cost over the horizon, and cost of a year at today's prices."""
+    """Every cost line of every plant as replayed: over the horizon, and in a year at today's prices."""
     planned = tuple(each for each in appraisal.alternatives if each.planned)
     finance = appraisal.case.finance
     head = ("Cost line", *(each.name for each in planned))
     present, yearly = [], []
     for name in cost_line_names(planned):
-        lines = [[line for line in each.cost_lines if line.name == name] for each in planned]
+        lines = [[line for line in each.headline_cost_lines if line.name == name] for each in planned]
         present.append((name, *(number(sum(line.present_cost for line in found)) for found in lines)))
         if any(line.per_year for found in lines for line in found):
             yearly.append((name, *(number(sum(line.per_year for line in found)) for found in lines)))
-    total = ("net present cost", *(number(each.net_present_cost) for each in planned))
+    total = ("net present cost", *(number(each.headline_cost) for each in planned))
     return (
         Table(
             caption=f"Present cost over {finance.horizon_years} years [{finance.currency}].",
@@ -149,10 +192,12 @@ def cost_tables(appraisal: Appraisal) -> tuple[Table, Table]:
 
 
 def fuel_table(appraisal: Appraisal) -> Table:
-    """What every plan burns its fuel for."""
+    """What every plant burns its fuel for."""
     planned = tuple(each for each in appraisal.alternatives if each.planned)
-    names = dict.fromkeys(part.name for each in planned for part in each.fuel_parts)
-    shares = {each.name: {part.name: part.mwh_per_year for part in each.fuel_parts} for each in planned}
+    names = dict.fromkeys(part.name for each in planned for part in each.headline_fuel_parts)
+    shares = {
+        each.name: {part.name: part.mwh_per_year for part in each.headline_fuel_parts} for each in planned
+    }
     return Table(
         caption=f"What the fuel of a year is burnt for [MWh/a, {BASIS_WORD[appraisal.fuel_basis]}].",
         head=("Purpose", *(each.name for each in planned)),
@@ -162,7 +207,9 @@ def fuel_table(appraisal: Appraisal) -> Table:
                     (name, *(number(shares[each.name].get(name, 0.0)) for each in planned)) for name in names
                 )
             ),
-            Group(rows=(("fuel", *(number(each.fuel_mwh_per_year) for each in planned)),), total=True),
+            Group(
+                rows=(("fuel", *(number(sum(shares[each.name].values())) for each in planned)),), total=True
+            ),
         ),
     )
 
@@ -188,6 +235,11 @@ def discounted_words(payback: Payback) -> str:
     if payback.discounted_years is None:
         return payback.note or MISSING
     return years(payback.discounted_years)
+
+
+def _run(result: AlternativeResult, cell: Callable[[Replayed], str]) -> str:
+    """A figure of the replay."""
+    return MISSING if result.replayed is None else cell(result.replayed)
 
 
 def _row(label: str, appraisal: Appraisal, cell: Cell, always: bool = False) -> tuple[str, ...]:
