@@ -14,6 +14,7 @@ from numba import njit
 from numpy.typing import NDArray
 
 from evenfire.replay.vessel_step import to_target_kg, vessel_after
+from evenfire.units import ATMOSPHERE_PA
 
 FloatArray = NDArray[np.float64]
 
@@ -358,7 +359,9 @@ def run(
             step_discharge += discharge
         step_process = process_pa
         if step_supplied < demand * step_s * (1.0 - 1.0e-9):
-            step_process = process_pa * step_supplied / (demand * step_s)
+            # Users take steam in proportion to gauge pressure: none at atmospheric pressure.
+            share = step_supplied / (demand * step_s)
+            step_process = ATMOSPHERE_PA + (process_pa - ATMOSPHERE_PA) * share
         totals[LOWEST_PROCESS] = min(totals[LOWEST_PROCESS], step_process)
         traces[0, t] = step_supplied / step_s
         traces[1, t] = step_charge / step_s

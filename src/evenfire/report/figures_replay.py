@@ -52,7 +52,7 @@ def worst_drawing(
             floor = roof
         steam.step(hours, worst.demand_t_h[span], where="post", color=INK, linewidth=0.8, label="demand")
         steam.set_ylabel("steam [t/h]")
-        steam.legend(loc="upper left", ncols=3)
+        steam.legend(loc="lower left", bbox_to_anchor=(0.0, 1.0), ncols=4, borderaxespad=0.0)
         if result.vessel is not None:
             pressure.plot(hours, worst.vessel_bar_abs[span] - ATMOSPHERE_BAR, color=BLUE, label="vessel")
         pressure.plot(
@@ -71,7 +71,7 @@ def worst_drawing(
             label="process",
         )
         pressure.set_ylabel("pressure [bar g]")
-        pressure.legend(loc="upper left", ncols=3)
+        pressure.legend(loc="lower left", bbox_to_anchor=(0.0, 1.0), ncols=4, borderaxespad=0.0)
         pressure.set_xlim(0.0, 24.0)
         pressure.xaxis.set_major_locator(MultipleLocator(3.0))
         pressure.xaxis.set_major_formatter(lambda hour, _: clock(60.0 * hour))
@@ -83,4 +83,4 @@ def worst_drawing(
         "Boiler output stacked under the demand line, and pressures. Lowest process pressure of the whole "
         f"replay: {gauge(run.lowest_process_bar_abs)} bar g."
     )
-    return drawing(key, title, description, [2.2, 1.7], draw)
+    return drawing(key, title, description, [2.4, 1.9], draw)

@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
-from evenfire.appraisal.results import AlternativeResult, Appraisal, Replayed
+from evenfire.appraisal.results import Appraisal, Replayed
 from evenfire.report.figures_paper import Drawing
 from evenfire.report.figures_replay import worst_drawing
-from evenfire.report.formats import MISSING, number, percent, thousands
-from evenfire.report.page_table import Table, plain_table
+from evenfire.report.formats import MISSING, number, percent, signed_percent, thousands
+from evenfire.report.page_table import Group, Table, plain_table
 from evenfire.report.tables import boiler_columns
 from evenfire.report.trade_units import gauge
 
@@ -24,43 +25,75 @@ class ReplayChapter:
 
 
 def replay_table(appraisal: Appraisal) -> Table:
-    """What of each planned saving real control keeps, and how the plant fares."""
-    money = f"thousand {appraisal.case.finance.currency}"
-    run = [(each.name, each.replayed) for each in appraisal.alternatives if each.replayed is not None]
-    return plain_table(
-        "Replay of the whole record: controls see the present and the past only.",
-        (
-            "Alternative",
-            f"Saving planned [{money}]",
-            f"Saving realised [{money}]",
-            "Realised",
-            "Vessel larger than with foresight",
-            f"Tuned control better than pressure band by [{money}]",
-            "Unmet steam [t/a]",
-            "Lowest process pressure [bar g]",
-            "Lowest boiler pressure [bar g]",
-            "Hours a year with danger of wet steam",
-            "Books close to",
-            "Verdict",
+    """What of each planned saving real control keeps, and how the plant fares; one column per alternative."""
+    money = f"thousand\u00a0{appraisal.case.finance.currency}"
+    runs = [(each.name, each.replayed) for each in appraisal.alternatives if each.replayed is not None]
+
+    def row(words: str, cell: Callable[[Replayed], str]) -> tuple[str, ...]:
+        return (words, *(cell(run) for _, run in runs))
+
+    return Table(
+        caption="Replay of the whole record: controls see the present and the past only.",
+        head=("", *(name for name, _ in runs)),
+        groups=(
+            Group(
+                rows=(
+                    row("Verdict", lambda run: "works" if run.passes else "leaves more unmet than tolerated"),
+                )
+            ),
+            Group(
+                title="Saving",
+                rows=(
+                    row(f"Planned [{money}]", lambda run: thousands(run.planned_saving)),
+                    row(f"Realised [{money}]", lambda run: thousands(run.net_present_saving)),
+                    row(
+                        "Realised share",
+                        lambda run: MISSING if run.realised_share is None else percent(run.realised_share),
+                    ),
+                    row(
+                        "Vessel larger than with foresight by",
+                        lambda run: (
+                            MISSING if run.margin_percent is None else percent(run.margin_percent / 100.0)
+                        ),
+                    ),
+                    row(
+                        f"Following demand better than a pressure band by [{money}]",
+                        lambda run: thousands(run.band_cost - run.net_present_cost),
+                    ),
+                    row(
+                        "Cost of operation on weeks not learnt on, against those learnt on",
+                        lambda run: signed_percent(run.judged_cost_per_t / run.learnt_cost_per_t - 1.0),
+                    ),
+                ),
+            ),
+            Group(
+                title="A year of operation",
+                rows=(
+                    row("Unmet steam [t/a]", lambda run: number(run.unmet_steam_t_per_year, 1)),
+                    row("Lowest process pressure [bar g]", lambda run: gauge(run.lowest_process_bar_abs)),
+                    row("Lowest boiler pressure [bar g]", lambda run: gauge(run.lowest_boiler_bar_abs)),
+                    row(
+                        "Danger of wet steam: boiler pressure too low [h/a]",
+                        lambda run: number(run.boiler_low_hours_per_year, 1),
+                    ),
+                    row(
+                        "Vessel cannot release fast enough [h/a]",
+                        lambda run: number(run.release_limited_hours_per_year, 1),
+                    ),
+                    row(
+                        "Vessel empty when asked [h/a]",
+                        lambda run: number(run.vessel_empty_hours_per_year, 1),
+                    ),
+                ),
+            ),
+            Group(
+                title="Books",
+                rows=(
+                    row("Mass closes to", lambda run: f"{run.mass_closure_relative:.0e}"),
+                    row("Energy closes to", lambda run: f"{run.energy_closure_relative:.0e}"),
+                ),
+            ),
         ),
-        tuple(
-            (
-                name,
-                thousands(each.planned_saving),
-                thousands(each.net_present_saving),
-                MISSING if each.realised_share is None else percent(each.realised_share),
-                MISSING if each.margin_percent is None else percent(each.margin_percent / 100.0),
-                thousands(each.band_cost - each.net_present_cost),
-                number(each.unmet_steam_t_per_year, 1),
-                gauge(each.lowest_process_bar_abs),
-                gauge(each.lowest_boiler_bar_abs),
-                number(each.boiler_low_hours_per_year, 1),
-                f"{max(each.mass_closure_relative, each.energy_closure_relative):.0e}",
-                "works" if each.passes else "leaves more unmet than tolerated",
-            )
-            for name, each in run
-        ),
-        word_columns=(11,),
     )
 
 
@@ -77,7 +110,7 @@ def replay_chapters(appraisal: Appraisal) -> tuple[ReplayChapter, ...]:
         chapters.append(
             ReplayChapter(
                 name=result.name,
-                words=_words(result, run),
+                words=_words(run),
                 tables=(*sizes, *events, _set_points_table(run)),
                 drawings=(worst_drawing(f"replay-{at}", result, run, order),),
             )
@@ -85,17 +118,13 @@ def replay_chapters(appraisal: Appraisal) -> tuple[ReplayChapter, ...]:
     return tuple(chapters)
 
 
-def _words(result: AlternativeResult, run: Replayed) -> str:
+def _words(run: Replayed) -> str:
     worst = (
-        f"{len(run.events)} of its events with unmet steam are listed."
+        f"Its worst {len(run.events)} events with unmet steam are listed."
         if run.events
         else "The process never got less steam than it asked for."
     )
-    learnt = f"{run.trials} trials on every other week; cost of operation per tonne of demand, "
-    learnt += (
-        f"{run.learnt_cost_per_t:.2f} on the weeks learnt on and {run.judged_cost_per_t:.2f} on the others."
-    )
-    return f"{worst} Settings: {learnt}"
+    return f"{worst} The settings were found in {run.trials} trials on every other week of the record."
 
 
 def _sizes_table(appraisal: Appraisal, run: Replayed) -> Table:
