@@ -26,6 +26,8 @@ SUFFIXES = {
     "years": "a",
     "degc": "degC",
     "trials": "1",
+    "scenarios": "1",
+    "correlation_with_fuel_price": "1",
     "kwh": "kWh/start",
     "kwh_lhv": "kWh/start",
     "w_m2_k": "W/(m2 K)",

@@ -131,6 +131,7 @@ def made_case(name: str = "Retort hall (invented)", alternatives: tuple[str, ...
         ),
         fan_power_w_per_kg_s=12_600.0,
         replay=ReplayRequest(trials=24, seed=1),
+        risk=None,
         plan=PlanRequest(
             step_s=300.0,
             time_limit_s=30.0,

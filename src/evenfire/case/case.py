@@ -101,6 +101,33 @@ class ReplayRequest:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class UncertainQuantity:
+    """A quantity of the case that scenarios change by a random factor."""
+
+    name: str
+    distribution: str
+    """``uniform``, ``triangular`` or ``lognormal``."""
+    low_deviation: float
+    """Deviation from the stated value [1]; of growth, per year."""
+    likely_deviation: float
+    """Peak of a triangular distribution [1]."""
+    high_deviation: float
+    yearly_volatility: float
+    """Standard deviation of the logarithm of the random walk per year [1]."""
+    correlation: float
+    """Of its normal score with that of the fuel price [1]."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class RiskRequest:
+    """Random scenarios of what is uncertain."""
+
+    scenarios: int
+    seed: int
+    uncertain: tuple[UncertainQuantity, ...]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class Case:
     """One site and one question."""
 
@@ -123,6 +150,8 @@ class Case:
     """Electric power of fan and feed pump per steam flow [W s/kg]."""
     plan: PlanRequest
     replay: ReplayRequest
+    risk: RiskRequest | None
+    """None where the case says nothing of what is uncertain."""
     notices: tuple[Notice, ...]
     """Every number that the program assumed because the case did not state it."""
     fuel_price_basis: str

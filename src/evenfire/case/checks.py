@@ -9,6 +9,7 @@ from evenfire.case.checks_boiler import boiler_problems, catalogue_problems
 from evenfire.case.checks_steam import boiling_problems, flooding_problems, steam_problems
 from evenfire.case.draft import Draft
 from evenfire.case.record import record_format
+from evenfire.case.risk import risk_problems
 from evenfire.case.schedule import schedule_problems
 from evenfire.case.schema_money import AlternativeName
 from evenfire.case.schema_record import Record
@@ -36,6 +37,7 @@ def draft_problems(draft: Draft) -> list[Problem]:
             _window_problems,
             flooding_problems,
             _plan_problems,
+            risk_problems,
         )
         for problem in check(draft)
     ]

@@ -14,6 +14,7 @@ from evenfire.case.checks import SHIFTABLE, possible_alternatives, starts_shift
 from evenfire.case.draft import boiler_place
 from evenfire.case.fuel_basis import lhv_to_hhv
 from evenfire.case.record import record_format
+from evenfire.case.risk import risk_request
 from evenfire.case.schedule import schedule_request
 from evenfire.case.schema import CaseFile
 from evenfire.case.schema_money import AlternativeName, Money
@@ -65,6 +66,7 @@ def case_in_si(
         fan_power_w_per_kg_s=written.money.fan_and_pump_kwh_per_t_steam * J_PER_KWH / KG_PER_TONNE,
         plan=_plan(written),
         replay=ReplayRequest(trials=written.replay.trials, seed=written.replay.seed),
+        risk=None if written.risk is None else risk_request(written.risk),
         notices=(*record_notices, *_notices(written), *boiler_notices),
         fuel_price_basis=written.fuel.calorific_basis,
         input_hashes=input_hashes,

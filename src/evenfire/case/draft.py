@@ -11,8 +11,9 @@ from pydantic import ValidationError
 from evenfire.case.messages import key_offer, section_problems, written
 from evenfire.case.schema import CaseFile
 from evenfire.case.schema_boiler import ExistingBoiler, NewBoiler
-from evenfire.case.schema_money import Money, Plan
+from evenfire.case.schema_money import Money, Plan, Replay
 from evenfire.case.schema_record import Record
+from evenfire.case.schema_risk import Risk
 from evenfire.case.schema_schedule import Schedule
 from evenfire.case.schema_section import Section, section_of
 from evenfire.case.schema_site import Fuel, Site, Steam, Vessel
@@ -38,6 +39,7 @@ class Draft:
     vessel: Vessel | None
     money: Money | None
     plan: Plan | None
+    risk: Risk | None
     sections: frozenset[str]
     """Names of the sections that the file holds, right or wrong."""
 
@@ -69,6 +71,7 @@ def case_draft(raw: Mapping[str, Any], file: str) -> tuple[Draft, list[Problem]]
     if "record" not in raw and "schedule" not in raw:
         description = str(CaseFile.model_fields["record"].description)
         problems.append(_missing_section("record", description, file))
+    _section(raw, "replay", Replay, file, problems)
     draft = Draft(
         file=file,
         site=site,
@@ -82,6 +85,7 @@ def case_draft(raw: Mapping[str, Any], file: str) -> tuple[Draft, list[Problem]]
         vessel=_section(raw, "vessel", Vessel, file, problems),
         money=_section(raw, "money", Money, file, problems),
         plan=_section(raw, "plan", Plan, file, problems),
+        risk=_section(raw, "risk", Risk, file, problems),
         sections=frozenset(raw),
     )
     return draft, problems + boiler_problems

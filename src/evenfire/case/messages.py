@@ -103,7 +103,18 @@ def section_problems(
     elsewhere : Mapping[str, tuple[str, ...]]
         Keys of every section, to say where a misplaced key belongs.
     """
-    return [_problem(defect, section, where, elsewhere) for defect in error.errors(include_url=False)]
+    defects = error.errors(include_url=False)
+    places = [defect["loc"] for defect in defects]
+    return [
+        _problem(defect, section, where, elsewhere)
+        for defect in defects
+        if defect["type"] != "too_short" or not any(_inside(place, defect["loc"]) for place in places)
+    ]
+
+
+def _inside(place: tuple[Any, ...], list_place: tuple[Any, ...]) -> bool:
+    """Whether a place is in a list: one whose entries are wrong is not empty."""
+    return len(place) > len(list_place) and place[: len(list_place)] == list_place
 
 
 def _problem(

@@ -7,6 +7,7 @@ from typing import Annotated, Any
 from evenfire.case.schema_boiler import ExistingBoiler, NewBoiler
 from evenfire.case.schema_money import Money, Plan, Replay
 from evenfire.case.schema_record import Record
+from evenfire.case.schema_risk import Risk
 from evenfire.case.schema_schedule import Schedule
 from evenfire.case.schema_section import Section, entry
 from evenfire.case.schema_site import Fuel, Site, Steam, Vessel
@@ -36,6 +37,9 @@ class CaseFile(Section):
     money: Annotated[Money, entry("Finance, and the prices that are not fuel.")]
     plan: Annotated[Plan, entry("How the alternatives are planned.")] = Plan()
     replay: Annotated[Replay, entry("How plans are tried on the whole record.")] = Replay()
+    risk: Annotated[
+        Risk | None, entry("What is uncertain, for `evenfire risk`; left out where nothing is drawn.")
+    ] = None
 
 
 def case_json_schema() -> dict[str, Any]:

@@ -15,6 +15,9 @@ Work = Callable[[Task], Any]
 Watch = Callable[[int, int], None]
 """Called with the number of tasks done and of all tasks."""
 
+CLUSTER_WAIT_S = 10
+"""How long a scheduler may take to answer."""
+
 
 def results(
     work: Work[Task],
@@ -77,7 +80,7 @@ def _on_cluster(work: Work[Task], left: list[tuple[str, Task]], address: str) ->
     except ImportError as error:
         raise _cluster_refusal(address, "needs Dask", "install evenfire[cluster]") from error
     try:
-        client = Client(address, timeout="10s")
+        client = Client(address, timeout=CLUSTER_WAIT_S)
     except (OSError, ValueError) as error:
         raise _cluster_refusal(
             address, f"no scheduler answers ({error})", "start dask-scheduler, or give its address"

@@ -3,8 +3,16 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from importlib.metadata import version
 
 from evenfire.errors import Notice
+
+_PACKAGES = ("evenfire", "highspy", "numpy", "numba", "scipy")
+
+
+def package_versions() -> tuple[tuple[str, str], ...]:
+    """Versions of everything that decides on numbers."""
+    return tuple((package, version(package)) for package in _PACKAGES)
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass, replace
-from importlib.metadata import version
 from itertools import pairwise, product
 from pathlib import Path
 from typing import Any
@@ -22,11 +21,11 @@ from evenfire.sweep.results import (
     SweepResult,
     SweepStretch,
     VariedInput,
+    package_versions,
 )
 from evenfire.sweep.strand import Changes, Strand, line_shares, strand_key, strand_record
-from evenfire.sweep.study import costs_are_straight, study
+from evenfire.sweep.study import costs_are_straight, study, swept_case
 
-_PACKAGES = ("evenfire", "highspy", "numpy", "numba", "scipy")
 _TIE = 1e-9
 
 Point = tuple[tuple[float, ...], tuple[PointAlternative, ...]]
@@ -77,7 +76,7 @@ def sweep(
     CaseError
         C123 for an unknown path, and what the case refuses at any value of one input.
     """
-    case = load_case(request.case)
+    case, notices = swept_case(load_case(request.case))
     request = replace(request, axes=_named(request))
     for each in request.axes:
         for value in each.values:
@@ -86,7 +85,7 @@ def sweep(
     plans = None if cluster is not None else kept / PLANS_FOLDER
     strands = _strands(request, case, along, straight, plans)
     ranks = rank_strands(request.case, case, request.rank_percent, plans)
-    journal = Journal(kept, repr((request, case.input_hashes, _versions())))
+    journal = Journal(kept, repr((request, case.input_hashes, package_versions())))
     records = results(
         strand_record,
         (*strands, *ranks),
@@ -114,15 +113,11 @@ def sweep(
         stretches=stretches,
         ranking=ranked_inputs(case, ranks, records[len(strands) :], request.rank_percent),
         asked_gap=case.plan.gap,
-        notices=case.notices,
+        notices=(*case.notices, *notices),
         input_hashes=case.input_hashes,
-        versions=_versions(),
+        versions=package_versions(),
     )
     return result, journal.remove
-
-
-def _versions() -> tuple[tuple[str, str], ...]:
-    return tuple((package, version(package)) for package in _PACKAGES)
 
 
 def _named(request: SweepRequest) -> tuple[Axis, ...]:
@@ -136,10 +131,18 @@ def _along(request: SweepRequest) -> tuple[int, bool]:
     for index in reversed(range(len(request.axes))):
         each = request.axes[index]
         shares = line_shares(tuple(((each.path, value),) for value in each.values))
-        inputs = [study(request.case, {each.path: value}).inputs for value in each.values]
-        if costs_are_straight(inputs[0], inputs[-1], tuple(zip(shares, inputs, strict=True))):
+        low, high = (study(request.case, {each.path: value}).inputs for value in (each.low, each.high))
+        if all(
+            costs_are_straight(low, high, ((share, study(request.case, {each.path: value}).inputs),))
+            for share, value in _middle_first(tuple(zip(shares, each.values, strict=True)))
+        ):
             return index, True
     return max(0, len(request.axes) - 1), False
+
+
+def _middle_first(places: tuple[tuple[float, float], ...]) -> tuple[tuple[float, float], ...]:
+    """Places with those farthest from the ends first: there a bent cost is seen at once."""
+    return tuple(sorted(places, key=lambda place: abs(place[0] - 0.5)))
 
 
 def _strands(

@@ -70,6 +70,12 @@ def strand_record(strand: Strand) -> Record:
     return _Planner(strand).record()
 
 
+def planned_point(strand: Strand) -> tuple[Study, list[tuple[str, PlanOutcome]]]:
+    """The only point of a strand with the plans themselves, by alternative."""
+    (changes,) = strand.points
+    return _Planner(strand).point_outcomes(changes)
+
+
 def line_shares(points: tuple[Changes, ...]) -> tuple[float, ...]:
     """Places of points on the way from the first to the last, by the input that varies."""
     first, last = dict(points[0]), dict(points[-1])
@@ -117,25 +123,30 @@ class _Planner:
 
     def _point(self, changes: Changes) -> list[Record]:
         """One point planned by itself, each alternative from the plans of those before it."""
+        at, outcomes = self.point_outcomes(changes)
+        return [
+            _row(
+                at,
+                name,
+                outcome.plan,
+                None if outcome.cost_k is None else outcome.cost_k * K,
+                None if outcome.bound_k is None else outcome.bound_k * K,
+                infeasible=outcome.stop is Stop.INFEASIBLE,
+                asked=self._strand.gap,
+            )
+            for name, outcome in outcomes
+        ]
+
+    def point_outcomes(self, changes: Changes) -> tuple[Study, list[tuple[str, PlanOutcome]]]:
         at = self._study(changes)
         plans: list[Plan] = []
-        rows = []
+        outcomes = []
         for name in at.case.plan.alternatives:
             outcome = self._outcome(changes, name, self._strand.gap, tuple(plans))
             if outcome.plan is not None:
                 plans.append(outcome.plan)
-            rows.append(
-                _row(
-                    at,
-                    name,
-                    outcome.plan,
-                    None if outcome.cost_k is None else outcome.cost_k * K,
-                    None if outcome.bound_k is None else outcome.bound_k * K,
-                    infeasible=outcome.stop is Stop.INFEASIBLE,
-                    asked=self._strand.gap,
-                )
-            )
-        return rows
+            outcomes.append((name, outcome))
+        return at, outcomes
 
     # --- along a price --------------------------------------------------------------------------
 

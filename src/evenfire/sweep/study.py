@@ -19,12 +19,14 @@ from evenfire.case.load import load_case
 from evenfire.demand.record_format import RecordFormat
 from evenfire.demand.series import DemandRecord, StorageNeed, TypicalDays
 from evenfire.demand.storage_need import storage_need
+from evenfire.errors import Notice, Problem, SweepError
 from evenfire.plan.inputs import AlternativeRules, PlanInputs, PlanRates
 from evenfire.plant import SteamConditions
 
 _KEPT_RECORDS = 4
 _KEPT_TABLES = 16
 _ROUNDING = 1e-11
+STAGGERED = "staggered starts"
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -59,12 +61,40 @@ def study(path: Path, changes: Mapping[str, float]) -> Study:
     CaseError, RecordError
         As for an appraisal of the changed case.
     """
-    case = load_case(path, changes)
+    case, _ = swept_case(load_case(path, changes))
     record, typical, need = _demand(path, case.record_format, case.schedule, case.plan.step_s)
     tables = _tables(case.vessel, case.conditions, _Whole(case))
     return Study(
         case=case, record=record, inputs=plan_inputs(case, record, typical, need, tables), tables=tables
     )
+
+
+def swept_case(case: Case) -> tuple[Case, tuple[Notice, ...]]:
+    """The case without the alternative that needs another demand than the rest, and that it is left out.
+
+    Raises
+    ------
+    SweepError
+        S111 where nothing else is left, or where it is the reference.
+    """
+    if STAGGERED not in case.plan.alternatives:
+        return case, ()
+    left = tuple(name for name in case.plan.alternatives if name != STAGGERED)
+    if not left or case.plan.reference == STAGGERED:
+        raise SweepError(
+            Problem(
+                code="S111",
+                where=f"{case.folder}: plan.reference and plan.alternatives",
+                found=f"'{STAGGERED}', which has a demand of its own",
+                allowed="name another reference and at least one more alternative",
+            )
+        )
+    notice = Notice(
+        code="S190",
+        text=f"'{STAGGERED}' has a demand of its own and is left out of sweeps and scenarios",
+        severity="warning",
+    )
+    return replace(case, plan=replace(case.plan, alternatives=left)), (notice,)
 
 
 class _Whole:
