@@ -15,6 +15,7 @@ from pathlib import Path
 
 import pytest
 
+from evenfire.cli.sweep import run
 from evenfire.errors import SweepError
 from evenfire.report.sweep_document import sweep_document_text, sweep_table
 from evenfire.sweep import engine
@@ -193,22 +194,30 @@ def _wait_until(ready: Callable[[], bool], most_s: float = 60.0) -> None:
 
 def test_processes_and_a_killed_run_change_no_byte(tiny_case, tmp_path):
     """`evenfire sweep` killed outright after some points, then repeated, and in two processes."""
-    command = [sys.executable, "-m", "evenfire", "sweep", str(tiny_case), "--quiet"]
-    command += ["--vary", "money.discount_rate_percent=4:12:12"]
+    vary = "money.discount_rate_percent=4:12:12"
 
-    def outcome(name: str, *more: str) -> list[bytes]:
-        subprocess.run([*command, "--out", str(tmp_path / name), *more], check=True, timeout=120)
+    def outcome(name: str, processes: int = 1) -> list[bytes]:
+        run(
+            tiny_case,
+            (vary,),
+            tmp_path / name,
+            rank_percent=None,
+            processes=processes,
+            cluster=None,
+            replace=False,
+            quiet=True,
+        )
         return [(tmp_path / name / f"sweep.{end}").read_bytes() for end in ("json", "csv", "html")]
 
     undisturbed = outcome("undisturbed")
     file = tmp_path / "killed.unfinished" / JOURNAL_FILE
-    running = subprocess.Popen([*command, "--out", str(tmp_path / "killed")])
+    command = [sys.executable, "-m", "evenfire", "sweep", str(tiny_case), "--quiet"]
+    running = subprocess.Popen([*command, "--vary", vary, "--out", str(tmp_path / "killed")])
     _wait_until(lambda: file.is_file() and len(file.read_text().splitlines()) > 3)
     running.kill()
     running.wait()
     assert not (tmp_path / "killed").exists()
-    before = file.read_text().splitlines()
-    assert 3 < len(before) < 13
+    assert 3 < len(file.read_text().splitlines()) < 13
     assert outcome("killed") == undisturbed
     assert not file.exists()
-    assert outcome("processes", "--processes", "2") == undisturbed
+    assert outcome("processes", processes=2) == undisturbed

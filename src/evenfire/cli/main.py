@@ -266,6 +266,46 @@ def sweep(
 
 
 @app.command()
+def risk(
+    case: CaseArgument,
+    out: Annotated[
+        Path | None, typer.Option(metavar="FOLDER", help="Output folder; CASE/risk unless given.")
+    ] = None,
+    scenarios: Annotated[int | None, typer.Option(help="How many scenarios, in place of the case's.")] = None,
+    seed: Annotated[int | None, typer.Option(help="Seed, in place of the case's.")] = None,
+    replan: Annotated[int, typer.Option(help="Plan so many of the scenarios anew.")] = 0,
+    processes: Annotated[int, typer.Option(min=1, max=256, help="Processes of this machine to work in.")] = 1,
+    cluster: Annotated[
+        str | None, typer.Option(metavar="ADDRESS", help="Work on the Dask cluster of this scheduler.")
+    ] = None,
+    replace: Annotated[bool, typer.Option("--replace", help="Overwrite an existing output folder.")] = False,
+    quiet: Annotated[bool, typer.Option("--quiet", help="Print only problems.")] = False,
+) -> None:
+    """Draw random scenarios of what is uncertain: how often is each alternative the cheapest?
+
+    Needs a [risk] section in the case. Writes risk.json, risk.csv and risk.html into one folder. The same
+    command goes on where an interrupted one stopped.
+
+    Example: evenfire risk cases/dyehouse --replan 50 --out chances
+    """
+    from evenfire.cli.risk import run
+
+    raise typer.Exit(
+        run(
+            case,
+            out,
+            scenarios=scenarios,
+            seed=seed,
+            replan=replan,
+            processes=processes,
+            cluster=cluster,
+            replace=replace,
+            quiet=quiet,
+        )
+    )
+
+
+@app.command()
 def schema() -> None:
     """Print the JSON Schema of case.toml, so that an editor can complete and check a case.
 

@@ -46,14 +46,7 @@ def run(
     folder = out if out is not None else case.folder / "sweep"
     check_output_folder(folder, replace, SWEEP_FILES)
     kept = folder.resolve().parent / f"{folder.resolve().name}.unfinished"
-    with Bar(
-        SpinnerColumn(),
-        TextColumn("{task.description}"),
-        BarColumn(),
-        TimeElapsedColumn(),
-        console=console,
-        transient=True,
-    ) as bar:
+    with progress_bar(console) as bar:
         task = bar.add_task("planning", total=None)
 
         def watch(done: int, of: int) -> None:
@@ -79,6 +72,18 @@ def run(
         for each in point.alternatives
     )
     return ExitStatus.GAP_MISSED if missed else ExitStatus.DONE
+
+
+def progress_bar(console: Console) -> Bar:
+    """Parts done of all, with the time they took."""
+    return Bar(
+        SpinnerColumn(),
+        TextColumn("{task.description}"),
+        BarColumn(),
+        TimeElapsedColumn(),
+        console=console,
+        transient=True,
+    )
 
 
 def _print(console: Console, result: SweepResult) -> None:

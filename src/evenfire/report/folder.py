@@ -16,12 +16,15 @@ from evenfire.report.document import document_text
 from evenfire.report.page import report_page
 from evenfire.report.page_plant import plant_page
 from evenfire.report.page_record import record_page
+from evenfire.report.page_risk import risk_page
 from evenfire.report.page_sweep import sweep_page
 from evenfire.report.record_document import record_document_text
 from evenfire.report.replay_document import replay_document_text, set_point_table, trace_table
+from evenfire.report.risk_document import risk_document_text, risk_table
 from evenfire.report.sweep_document import sweep_document_text, sweep_table
 from evenfire.report.tables import dispatch_table
 from evenfire.sweep.results import SweepResult
+from evenfire.sweep.risk_results import RiskResult
 
 DOCUMENT_FILE = "appraisal.json"
 DISPATCH_FILE = "dispatch.csv"
@@ -42,6 +45,10 @@ SWEEP_DOCUMENT_FILE = "sweep.json"
 SWEEP_TABLE_FILE = "sweep.csv"
 SWEEP_PAGE_FILE = "sweep.html"
 SWEEP_FILES = (SWEEP_DOCUMENT_FILE, SWEEP_TABLE_FILE, SWEEP_PAGE_FILE)
+RISK_DOCUMENT_FILE = "risk.json"
+RISK_TABLE_FILE = "risk.csv"
+RISK_PAGE_FILE = "risk.html"
+RISK_FILES = (RISK_DOCUMENT_FILE, RISK_TABLE_FILE, RISK_PAGE_FILE)
 
 
 def check_output_folder(folder: Path, replace: bool, own: tuple[str, ...] = OUTPUT_FILES) -> None:
@@ -200,6 +207,31 @@ def write_sweep(result: SweepResult, folder: Path, replace: bool) -> None:
         SWEEP_DOCUMENT_FILE: sweep_document_text(result),
         SWEEP_TABLE_FILE: sweep_table(result),
         SWEEP_PAGE_FILE: sweep_page(result),
+    }
+    _write_texts(texts, folder, replace)
+
+
+def write_risk(result: RiskResult, folder: Path, replace: bool) -> None:
+    """Write ``risk.json``, ``risk.csv`` and ``risk.html`` into a folder, by the rules of an appraisal.
+
+    Parameters
+    ----------
+    result
+        What to write.
+    folder
+        Where to; created, its parent must exist.
+    replace
+        Whether scenarios that are already there may be replaced.
+
+    Raises
+    ------
+    OutputError
+        As for :func:`check_output_folder`.
+    """
+    texts = {
+        RISK_DOCUMENT_FILE: risk_document_text(result),
+        RISK_TABLE_FILE: risk_table(result),
+        RISK_PAGE_FILE: risk_page(result),
     }
     _write_texts(texts, folder, replace)
 

@@ -118,7 +118,7 @@ def risk(
     alternatives = alternative_risks(names, base_costs, gaps, costs)
     strands = tuple(
         replace(base, points=(changes,), plans_folder=plans)
-        for changes in _scenario_changes(path, case, drawn, replan)
+        for changes in scenario_changes(path, case, drawn, replan)
     )
     records = results(
         strand_record, strands, strand_key, journal, processes=processes, cluster=cluster, watch=watch
@@ -226,7 +226,7 @@ def alternative_risks(
     )
 
 
-def _scenario_changes(path: Path, case: Case, drawn: Scenarios, count: int) -> list[Changes]:
+def scenario_changes(path: Path, case: Case, drawn: Scenarios, count: int) -> list[Changes]:
     """The inputs that make a case cost what a scenario does: each scales the present cost of its line."""
     stated = dict(stated_inputs(path))
     scaled = [(name, line) for name, line in _PATHS if stated.get(name)]
