@@ -244,7 +244,8 @@ def sweep(
 ) -> None:
     """Plan a case over one or two of its inputs: when does the answer change?
 
-    Writes sweep.json, sweep.csv and sweep.html into one folder. The same command goes on where an
+    With nothing named: the fuel price from half to double of what the case states, and a ranking of inputs by
+    20 %. Writes sweep.json, sweep.csv and sweep.html into one folder. The same command goes on where an
     interrupted one stopped.
 
     Example: evenfire sweep cases/cannery --vary fuel.price_per_mwh=20:120:25 --out prices

@@ -9,12 +9,13 @@ from rich.progress import BarColumn, SpinnerColumn, TextColumn, TimeElapsedColum
 from rich.progress import Progress as Bar
 
 from evenfire.case.load import load_case
-from evenfire.errors import ExitStatus, Problem, SweepError
+from evenfire.errors import ExitStatus
 from evenfire.report.folder import SWEEP_FILES, check_output_folder, write_sweep
 from evenfire.report.page_sweep import answer_words
 from evenfire.sweep.axis import axis
 from evenfire.sweep.results import SweepResult
 from evenfire.sweep.run import SweepRequest, sweep
+from evenfire.sweep.usual import usual_request
 
 
 def run(
@@ -30,17 +31,10 @@ def run(
 ) -> ExitStatus:
     """Sweep a case and write its folder; an interrupted sweep is continued by the same command."""
     console = Console(quiet=quiet, highlight=False)
-    if not vary and rank_percent is None:
-        raise SweepError(
-            Problem(
-                code="S108",
-                where="evenfire sweep",
-                found="nothing to vary",
-                allowed="give --vary PATH=LOW:HIGH:COUNT once or twice, --rank-percent, or both",
-            )
-        )
-    request = SweepRequest(
-        case=path.resolve(), axes=tuple(axis(text) for text in vary), rank_percent=rank_percent
+    request = (
+        SweepRequest(case=path.resolve(), axes=tuple(axis(text) for text in vary), rank_percent=rank_percent)
+        if vary or rank_percent is not None
+        else usual_request(path.resolve())
     )
     case = load_case(path)
     folder = out if out is not None else case.folder / "sweep"
