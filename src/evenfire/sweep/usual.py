@@ -1,4 +1,4 @@
-"""The question that every case raises: at which fuel price does the answer change, and which input matters?"""
+"""The question of every case: at which fuel price does the answer change, and which input matters?"""
 
 from __future__ import annotations
 
