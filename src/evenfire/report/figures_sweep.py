@@ -15,8 +15,8 @@ from evenfire.sweep.results import SweepResult, VariedInput
 SHOWN_RANKED = 12
 
 
-def input_words(each: VariedInput, currency: str) -> str:
-    """An input with its unit, for an axis."""
+def axis_words(each: VariedInput, currency: str) -> str:
+    """An input with its unit, for an axis: a long path is cut."""
     unit = each.unit.replace("currency", currency)
     return f"{label(each.path)} [{unit}]" if unit else label(each.path)
 
@@ -50,7 +50,7 @@ def cost_drawing(result: SweepResult) -> Drawing:
             )
         if axis.stated is not None and axis.values[0] <= axis.stated <= axis.values[-1]:
             axes.axvline(axis.stated, color=INK, linewidth=0.9, linestyle="--")
-        axes.set_xlabel(input_words(axis, result.currency))
+        axes.set_xlabel(axis_words(axis, result.currency))
         axes.set_ylabel(f"net present cost [thousand {label(result.currency)}]")
         axes.yaxis.set_major_formatter(lambda value, _: f"{value:,.0f}".replace("-", "−"))
         axes.legend(loc="lower left", bbox_to_anchor=(0.0, 1.0), ncols=3)
@@ -90,8 +90,8 @@ def winner_drawing(result: SweepResult) -> Drawing:
                     label="" if name in shown else label(name),
                 )
                 shown.add(name)
-        axes.set_xlabel(input_words(first, result.currency))
-        axes.set_ylabel(input_words(second, result.currency))
+        axes.set_xlabel(axis_words(first, result.currency))
+        axes.set_ylabel(axis_words(second, result.currency))
         axes.grid(visible=False)
         axes.legend(loc="lower left", bbox_to_anchor=(0.0, 1.0), ncols=4)
 

@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+from collections import Counter
+
 from jinja2 import Environment, PackageLoader, StrictUndefined
 
 from evenfire.report.cautions import CAUTIONS
-from evenfire.report.figures_sweep import cost_drawing, input_words, ranking_drawing, winner_drawing
+from evenfire.report.figures_sweep import cost_drawing, ranking_drawing, winner_drawing
 from evenfire.report.formats import MISSING, digits, gap_words, number, percent, plain, thousands
 from evenfire.report.page_table import Group, Table, plain_table
-from evenfire.sweep.results import PointAlternative, SweepResult
+from evenfire.sweep.results import PointAlternative, SweepResult, VariedInput
 
 SWEEP_TEMPLATE = "sweep.html"
 SHOWN_POINTS = 400
@@ -43,9 +45,21 @@ def sweep_page(result: SweepResult) -> str:
     )
 
 
+def input_words(each: VariedInput, currency: str) -> str:
+    """An input with its unit."""
+    unit = each.unit.replace("currency", currency)
+    return f"{each.path} [{unit}]" if unit else each.path
+
+
 def answer_words(result: SweepResult) -> str:
-    """Who wins where, in one sentence per stretch."""
-    if len(result.inputs) != 1:
+    """Who wins where: by stretch of one input, or how often over two."""
+    if len(result.inputs) == 2:
+        wins = Counter(point.winner for point in result.points if point.winner is not None)
+        return "; ".join(
+            f"“{name}” is the cheapest at {times} of {len(result.points)} points"
+            for name, times in wins.most_common()
+        ) + ("." if wins else "No alternative has a plan.")
+    if not result.inputs:
         return ""
     unit = result.inputs[0].unit.replace("currency", result.currency)
     words = []
