@@ -2,17 +2,20 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from itertools import pairwise
 from pathlib import Path
 
 import pytest
 
+from evenfire.case.load import load_case
 from evenfire.errors import CaseError, SweepError
 from evenfire.report.page_sweep import sweep_page
 from evenfire.report.sweep_document import sweep_document, sweep_table
 from evenfire.sweep.axis import axis
 from evenfire.sweep.run import SweepRequest, sweep
 from evenfire.sweep.strand import Strand, strand_record
+from evenfire.sweep.study import swept_case
 from evenfire.sweep.usual import usual_request
 from tests.sweep.tiny_case import write_tiny_case
 
@@ -160,3 +163,15 @@ def test_the_usual_question_is_the_fuel_price_and_the_ranking(tiny_case):
     (fuel,) = request.axes
     assert (fuel.path, fuel.low, fuel.high) == ("fuel.price_per_mwh", 22.5, 90.0)
     assert request.rank_percent == 20.0
+
+
+def test_staggered_starts_are_left_out_and_said_to_be(tiny_case):
+    """They have a demand of their own, which no sweep changes; nor can they be a sweep's reference."""
+    case = load_case(tiny_case)
+    names = ("as is", "staggered starts")
+    swept, (notice,) = swept_case(replace(case, plan=replace(case.plan, alternatives=names)))
+    assert swept.plan.alternatives == ("as is",)
+    assert notice.code == "S190"
+    with pytest.raises(SweepError, match="S111"):
+        swept_case(replace(case, plan=replace(case.plan, alternatives=names, reference="staggered starts")))
+    assert swept_case(case) == (case, ())
