@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 from dataclasses import replace
 from pathlib import Path
 
@@ -12,7 +13,8 @@ from scipy import stats
 from evenfire.appraisal.priced import priced
 from evenfire.case.case import RiskRequest, UncertainQuantity
 from evenfire.case.load import load_case
-from evenfire.errors import SweepError
+from evenfire.cli.risk import run
+from evenfire.errors import ExitStatus, OutputError, SweepError
 from evenfire.money.cash_flow import cash_flow
 from evenfire.money.terms import Price, YearlyQuantities
 from evenfire.report.page_risk import risk_page
@@ -251,3 +253,20 @@ def test_impossible_numbers_of_scenarios_are_refused(risky_case, tmp_path, count
     """S110 for none, too many, and more planned anew than drawn."""
     with pytest.raises(SweepError, match="S110"):
         risk(risky_case, tmp_path / "kept", scenario_count=count, replan=anew)
+
+
+def test_the_command_writes_its_folder_once(risky_case, tmp_path):
+    """risk.json, risk.csv and risk.html, nothing unfinished; the folder is not written over unasked."""
+    options = {"seed": 4, "replan": 0, "processes": 1, "cluster": None, "replace": False, "quiet": True}
+    out = tmp_path / "chances"
+    assert run(risky_case, out, scenarios=150, **options) == ExitStatus.DONE
+    assert sorted(each.name for each in tmp_path.iterdir()) == ["chances"]
+    document = json.loads((out / "risk.json").read_text())
+    assert (document["scenarios"], document["seed"]) == (150, 4)
+    assert {"probability_cheapest", "expected_regret", "p10_cost", "p90_cost", "largest_regret"} <= set(
+        document["alternatives"][0]
+    )
+    assert len((out / "risk.csv").read_text().splitlines()) == 151
+    assert "://" not in (out / "risk.html").read_text().replace("http://www.w3.org", "")
+    with pytest.raises(OutputError, match="already exists"):
+        run(risky_case, out, scenarios=150, **options)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Iterator
+from itertools import islice
 from typing import Any, TypeVar
 
 import joblib
@@ -13,10 +14,12 @@ from evenfire.sweep.journal import Journal
 Task = TypeVar("Task")
 Work = Callable[[Task], Any]
 Watch = Callable[[int, int], None]
-"""Called with the number of tasks done and of all tasks."""
+"""Called with the number of tasks done and of all different tasks."""
 
 CLUSTER_WAIT_S = 10
-"""How long a scheduler may take to answer."""
+"""How long a scheduler may take to answer [s]."""
+MOST_WAITING = 1000
+"""Tasks that the scheduler holds at once."""
 
 
 def results(
@@ -47,13 +50,16 @@ def results(
     watch : callable, optional
     """
     keys = [key_of(task) for task in tasks]
-    left = [(key, task) for key, task in dict(zip(keys, tasks, strict=True)).items() if key not in journal]
+    by_key = dict(zip(keys, tasks, strict=True))
+    left = [(key, task) for key, task in by_key.items() if key not in journal]
+    done = len(by_key) - len(left)
     if watch is not None:
-        watch(len(tasks) - len(left), len(tasks))
+        watch(done, len(by_key))
     for key, result in _computed(work, left, processes, cluster):
         journal.put(key, result)
+        done += 1
         if watch is not None:
-            watch(sum(key in journal for key in keys), len(tasks))
+            watch(done, len(by_key))
     return tuple(journal.get(key) for key in keys)
 
 
@@ -86,10 +92,22 @@ def _on_cluster(work: Work[Task], left: list[tuple[str, Task]], address: str) ->
             address, f"no scheduler answers ({error})", "start dask-scheduler, or give its address"
         ) from error
     with client:
-        futures = {client.submit(work, task, pure=False, retries=3): key for key, task in left}
-        for future in as_completed(futures):
-            yield futures[future], future.result()
-            future.release()
+        waiting = iter(left)
+        key_of = {}
+
+        def submitted(count: int) -> list[Any]:
+            """Further tasks, handed to the scheduler."""
+            new = {
+                client.submit(work, task, pure=False, retries=3): key for key, task in islice(waiting, count)
+            }
+            key_of.update(new)
+            return list(new)
+
+        running = as_completed(submitted(MOST_WAITING))
+        for future in running:
+            yield key_of.pop(future), future.result()
+            for each in submitted(1):
+                running.add(each)
 
 
 def _cluster_refusal(address: str, found: str, allowed: str) -> SweepError:
