@@ -112,6 +112,26 @@ def test_a_cluster_that_does_not_answer_is_refused(tmp_path, monkeypatch):
         )
 
 
+def test_a_task_that_kills_every_worker_is_told(tmp_path):
+    """A task that ends the process it runs in, wherever it is tried: S112."""
+    from dask.distributed import LocalCluster
+
+    with (
+        LocalCluster(
+            n_workers=1, threads_per_worker=1, host="127.0.0.1", dashboard_address=None, silence_logs=50
+        ) as cluster,
+        pytest.raises(SweepError, match=r"gave a task up.*S112"),
+    ):
+        results(
+            os._exit,
+            (1,),
+            _as_text,
+            Journal(tmp_path / "kept", "a"),
+            processes=1,
+            cluster=cluster.scheduler_address,
+        )
+
+
 # --- sweeps ------------------------------------------------------------------------------------
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Iterator
+from concurrent.futures import CancelledError
 from itertools import islice
 from typing import Any, TypeVar
 
@@ -82,7 +83,7 @@ def _keyed(work: Work[Task], key: str, task: Task) -> tuple[str, Any]:
 def _on_cluster(work: Work[Task], left: list[tuple[str, Task]], address: str) -> Iterator[tuple[str, Any]]:
     """Tasks on the workers of a scheduler; those of a worker that dies are given to another."""
     try:
-        from dask.distributed import Client, as_completed
+        from dask.distributed import Client, KilledWorker, as_completed
     except ImportError as error:
         raise _cluster_refusal(address, "needs Dask", "install evenfire[cluster]") from error
     try:
@@ -105,7 +106,19 @@ def _on_cluster(work: Work[Task], left: list[tuple[str, Task]], address: str) ->
 
         running = as_completed(submitted(MOST_WAITING))
         for future in running:
-            yield key_of.pop(future), future.result()
+            try:
+                result = future.result()
+            except (KilledWorker, CancelledError) as error:
+                raise SweepError(
+                    Problem(
+                        code="S112",
+                        where=f"--cluster {address}",
+                        found=f"the cluster gave a task up ({type(error).__name__})",
+                        allowed="give workers more memory and see their logs; the same command goes on from"
+                        " what is done",
+                    )
+                ) from error
+            yield key_of.pop(future), result
             for each in submitted(1):
                 running.add(each)
 
