@@ -103,6 +103,11 @@ def test_inputs_are_ranked_by_what_they_move(tiny_case, tmp_path):
     assert (fuel.low.factor, fuel.high.factor) == pytest.approx((0.8, 1.2))
     for low, high in zip(fuel.low.net_present_cost, fuel.high.net_present_cost, strict=True):
         assert low < high < 1.5 * low
+    for each in result.ranking:
+        for end in (each.low, each.high):
+            reference, *others = end.net_present_cost
+            assert end.saving in [reference - other for other in others]
+    assert swings[0] > 0.0
     assert "Which input matters" in sweep_page(result)
 
 

@@ -142,8 +142,9 @@ def ranking_drawing(result: SweepResult) -> Drawing:
     return drawing(
         "sweep-ranking",
         "Which input matters",
-        f"Net present saving of the cheapest alternative, in thousand {result.currency}, with each input at "
-        f"{plain(100 * low)} and {plain(100 * high)} % of its value, planned anew: {words}.",
+        "Net present saving of the cheapest alternative beside the reference, in thousand "
+        f"{result.currency}, with each input at {plain(100 * low)} and {plain(100 * high)} % of its value, "
+        f"planned anew: {words}.",
         (0.9 + 0.3 * len(ranked),),
         draw,
     )

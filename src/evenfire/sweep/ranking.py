@@ -92,12 +92,12 @@ def ranked_inputs(
     if percent is None or not strands:
         return ()
     base, *ends = [record["points"][0] for record in records]
-    winner = _winner(base)
+    contender = _winner([row for row in base if row["name"] != case.plan.reference])
     groups = list(_groups(strands[0].case))
     found = []
     for number, (name, inputs) in enumerate(groups):
         low, high = (
-            _end(case, ends[2 * number + which], factor, winner)
+            _end(case, ends[2 * number + which], factor, contender)
             for which, factor in enumerate(_factors(percent))
         )
         gaps = [row["gap"] or 0.0 for which in (0, 1) for row in ends[2 * number + which] if "gap" in row]
@@ -120,9 +120,9 @@ def _winner(rows: list[Record]) -> str | None:
     return min(planned, key=lambda row: float(row["net_present_cost"]))["name"] if planned else None
 
 
-def _end(case: Case, rows: list[Record], factor: float, base_winner: str | None) -> RankedEnd:
+def _end(case: Case, rows: list[Record], factor: float, contender: str | None) -> RankedEnd:
     costs = {row["name"]: row.get("net_present_cost") for row in rows}
-    reference, best = costs.get(case.plan.reference), costs.get(base_winner or "")
+    reference, best = costs.get(case.plan.reference), costs.get(contender or "")
     return RankedEnd(
         factor=factor,
         net_present_cost=tuple(costs.get(name) for name in case.plan.alternatives),

@@ -122,7 +122,7 @@ class RankedEnd:
     """Per alternative of the case [currency]."""
     winner: str | None
     saving: float | None
-    """Of the base case's winner against the reference [currency]."""
+    """Against the reference, of what is cheapest beside it in the case as stated [currency]."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
