@@ -33,6 +33,7 @@ _FEWEST_JOINED_DAYS = 13
 """From this number of days on a plan keeps the volume of a node's middle; its days are polished singly."""
 _TRIED_APART = (1.06, 1.01)
 """Ratio of volumes that are planned anew: on a rough grid where a plan may move its volume; else."""
+_MOST_FRUITLESS_TRIES = 24
 _LARGER_VESSELS = (1.25, 1.6, 2.0)
 _SHORTLIST_MARGIN = 0.03
 """Plans up to this much dearer than the best are worth a replay [1]."""
@@ -123,7 +124,7 @@ class Search:
             while queue:
                 bound = min(queue[0][0], closed)
                 self._report(watch, bound, queue[0][2])
-                if self._within(gap, bound):
+                if self._within(gap, bound) or self._fruitless():
                     break
                 if time.monotonic() - self._begin > time_limit_s:
                     stop = Stop.TIME_LIMIT
@@ -143,6 +144,10 @@ class Search:
         if stop is Stop.GAP_REACHED and not self._within(gap, bound):
             stop = Stop.SOLVER_LIMIT
         return replace(self._outcome(stop, bound), shortlist=self._shortlist())
+
+    def _fruitless(self) -> bool:
+        """Whether no plan came of many tries, as where ramps bind: the whole model then does better."""
+        return self._best.plan is None and len(self._best.tried) >= _MOST_FRUITLESS_TRIES
 
     def _within(self, gap: float, bound: float) -> bool:
         cost = self._best.cost_k
