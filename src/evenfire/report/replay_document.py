@@ -11,6 +11,7 @@ import pandas as pd
 
 from evenfire.appraisal.results import AlternativeResult, Appraisal, Replayed
 from evenfire.report.cautions import CAUTIONS
+from evenfire.report.tables import as_text
 from evenfire.report.trade_units import repeating_command
 
 SCHEMA_VERSION = 1
@@ -73,7 +74,7 @@ def replay_document_text(appraisal: Appraisal) -> str:
 def set_point_table(appraisal: Appraisal) -> str:
     """``set_points.csv``: one line per setting and alternative."""
     rows = [
-        {"alternative": result.name} | asdict(row)
+        {"alternative": as_text(result.name)} | {key: as_text(text) for key, text in asdict(row).items()}
         for result in appraisal.alternatives
         if result.replayed is not None
         for row in result.replayed.set_points

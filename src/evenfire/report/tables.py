@@ -67,8 +67,8 @@ def _rows(
     position = {name: at for at, name in enumerate(boiler_names(alternative))}
     steps_per_hour = MINUTES_PER_HOUR / schedule.step_minutes
     start = [
-        _as_text(alternative.name),
-        _as_text(schedule.day),
+        as_text(alternative.name),
+        as_text(schedule.day),
         schedule.date,
         _number(schedule.days_per_year, 10),
     ]
@@ -110,7 +110,8 @@ def _number(value: float, digits: int = 6) -> str:
     return f"{value + 0.0:.{digits}g}"
 
 
-def _as_text(words: str) -> str:
+def as_text(words: str) -> str:
+    """User text on one line, with an apostrophe where a spreadsheet would take it for a formula."""
     line = _one_line(words)
     return f"'{line}" if line.startswith(FORMULA_SIGNS) else line
 
